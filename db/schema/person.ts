@@ -1,0 +1,38 @@
+import { boolean, index, pgEnum, pgTable, text, uuid } from 'drizzle-orm/pg-core';
+import { moment, momentByDatabase } from './columns';
+
+export const personRole = pgEnum('person_role', ['pi', 'researcher', 'guest']);
+
+/** Somebody with an account. Rows are never deleted: names stay valid under what they wrote. */
+export const person = pgTable('person', {
+  id: uuid('id').primaryKey().defaultRandom(),
+  /** Login name: a handle chosen once, never changed, never given to anybody else. Lower case. */
+  login: text('login').notNull().unique(),
+  /** Lower case. */
+  email: text('email').notNull().unique(),
+  /** As it is printed under a signature. */
+  name: text('name').notNull(),
+  role: personRole('role').notNull(),
+  admin: boolean('admin').notNull().default(false),
+  active: boolean('active').notNull().default(true),
+  /** argon2id, PHC string. */
+  passwordHash: text('password_hash').notNull(),
+  createdAt: momentByDatabase('created_at'),
+});
+
+/** One signed-in browser. The token in the cookie only names this row; the row decides, on every request and socket. */
+export const login = pgTable(
+  'login',
+  {
+    id: uuid('id').primaryKey().defaultRandom(),
+    personId: uuid('person_id')
+      .notNull()
+      .references(() => person.id, { onDelete: 'restrict' }),
+    startedAt: momentByDatabase('started_at'),
+    /** Last request by a person (websocket pings do not count). */
+    seenAt: momentByDatabase('seen_at'),
+    endedAt: moment('ended_at'),
+    userAgent: text('user_agent').notNull().default(''),
+  },
+  (table) => [index('login_by_person').on(table.personId)],
+);
