@@ -1,0 +1,69 @@
+/**
+ * Who may do what: one pure function, asked by actions, routes and the websocket server alike. Unknown means no.
+ * The database repeats the one check that guards the record (append_updates), so that a slip here cannot write.
+ */
+
+export type PersonRole = 'pi' | 'researcher' | 'guest';
+export type MemberRole = 'owner' | 'editor' | 'reader' | 'witness';
+export type EntryState = 'draft' | 'closing' | 'signed' | 'countersigned' | 'void';
+
+/** Somebody signed in, as the database knows them at this moment. */
+export interface Actor {
+  readonly personId: string;
+  readonly loginId: string;
+  readonly login: string;
+  readonly name: string;
+  readonly role: PersonRole;
+  readonly admin: boolean;
+  readonly active: boolean;
+}
+
+/** The actor's place in the notebook that the thing lies in; null: not a member. */
+export interface InNotebook {
+  readonly member: MemberRole | null;
+  readonly archived?: boolean;
+}
+
+export interface InEntry extends InNotebook {
+  readonly state: EntryState;
+}
+
+/** Every action with what must be known about its thing. */
+export interface ActionThings {
+  'notebook.read': InNotebook;
+  'notebook.create': null;
+  'entry.create': InNotebook;
+  'entry.read': InEntry;
+  /** Body, title, date, settings of a block. */
+  'entry.write': InEntry;
+  'attachment.read': InEntry;
+  'attachment.add': InEntry;
+  'reading.create': InEntry;
+  'measurements.read': null;
+}
+
+export type Action = keyof ActionThings;
+
+const isMember = (thing: InNotebook) => thing.member !== null;
+const isWriter = (actor: Actor, thing: InNotebook) =>
+  actor.role !== 'guest' && (thing.member === 'owner' || thing.member === 'editor');
+const isOpenDraft = (thing: InEntry) => thing.state === 'draft';
+
+const rules: { [A in Action]: (actor: Actor, thing: ActionThings[A]) => boolean } = {
+  'notebook.read': (_actor, thing) => isMember(thing),
+  'notebook.create': (actor) => actor.role === 'pi' || (actor.admin && actor.role !== 'guest'),
+  'entry.create': (actor, thing) => isWriter(actor, thing) && !thing.archived,
+  'entry.read': (_actor, thing) => isMember(thing),
+  'entry.write': (actor, thing) => isWriter(actor, thing) && isOpenDraft(thing) && !thing.archived,
+  'attachment.read': (_actor, thing) => isMember(thing),
+  'attachment.add': (actor, thing) => isWriter(actor, thing) && isOpenDraft(thing) && !thing.archived,
+  'reading.create': (actor, thing) => isWriter(actor, thing) && isOpenDraft(thing) && !thing.archived,
+  'measurements.read': () => true,
+};
+
+/** Whether `actor` may do `action` to `thing`. Nobody who is deactivated, or unknown, may do anything. */
+export function may<A extends Action>(actor: Actor | null, action: A, thing: ActionThings[A]): boolean {
+  if (actor === null || !actor.active) return false;
+  const rule = rules[action];
+  return rule !== undefined && rule(actor, thing);
+}
