@@ -1,7 +1,7 @@
 import path from 'node:path';
 import { defineConfig } from 'vitest/config';
 
-/** Two projects: pure units need nothing; the others share one PostgreSQL cluster made by the global set-up. */
+/** Three projects: pure units need nothing; live tests share one PostgreSQL cluster; e2e journeys share one whole product. */
 const alias = { '@': path.resolve(import.meta.dirname) };
 
 export default defineConfig({
@@ -27,6 +27,19 @@ export default defineConfig({
           globalSetup: ['tests/helpers/global-cluster.ts'],
           testTimeout: 120_000,
           hookTimeout: 120_000,
+        },
+      },
+      {
+        resolve: { alias },
+        test: {
+          name: 'e2e',
+          environment: 'node',
+          include: ['tests/e2e/**/*.test.ts'],
+          globalSetup: ['tests/e2e/global-stack.ts'],
+          // Journeys share two cores with the product they drive: one file at a time.
+          fileParallelism: false,
+          testTimeout: 300_000,
+          hookTimeout: 900_000,
         },
       },
     ],
