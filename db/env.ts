@@ -3,9 +3,9 @@ import { z } from 'zod';
 /**
  * The environment, read and checked in this one place.
  *
- * `readSettings` is what a person may set (see .env.example); the start command reads it. `env` is what a running
- * process (web, websocket server, projector, file fake) needs; the start command derives it in demo mode, an
- * administrator sets it in production. Faults are listed all at once, with the name and the remedy.
+ * `readSettings` is what a person may set (see .env.example); the start command reads it. `env`, `wsEnv` and
+ * `projectorEnv` are what the running processes need; the start command derives them in demo mode, an administrator
+ * sets them in production. Faults are listed all at once, with the name and the remedy.
  */
 
 const port = (byDefault: number) =>
@@ -27,38 +27,55 @@ const settingsShape = z.object({
 });
 
 const secret = z.string({ error: 'is missing' }).min(32, 'must have at least 32 characters');
-const url = z.string({ error: 'is missing' }).min(1, 'is empty').refine(URL.canParse, 'must be an address (URL)');
+const url = z
+  .string({ error: 'is missing' })
+  .min(1, 'is empty')
+  .refine(URL.canParse, 'must be an address (URL)');
 
-const envShape = z
-  .object({
-    MOTEBOOK_MODE: z.enum(['demo', 'production'], { error: 'must be demo or production' }).default('demo'),
-    MOTEBOOK_WS_PORT: port(4311),
-    /** What the browser connects to for live editing, e.g. ws://127.0.0.1:4311 */
-    MOTEBOOK_WS_URL: url,
-    /** Origins of the file service: where browsers send uploads. */
-    MOTEBOOK_FILES_ORIGIN: url,
-    /** Folder for verified copies of files fetched from the file service. */
-    MOTEBOOK_CACHE: z.string({ error: 'is missing' }).min(1, 'is empty'),
-    MOTEBOOK_DATABASE_APP: url,
-    MOTEBOOK_DATABASE_WS: url,
-    NEXTAUTH_URL: url,
-    NEXTAUTH_SECRET: secret,
-    UPLOADTHING_TOKEN: z.string({ error: 'is missing' }).min(1, 'is empty'),
-  })
-  .superRefine((values, context) => {
-    if (values.MOTEBOOK_MODE !== 'production') return;
-    const origin = new URL(values.NEXTAUTH_URL);
-    if (origin.protocol !== 'https:' && !isLoopback(origin.hostname)) {
-      context.addIssue({ code: 'custom', path: ['NEXTAUTH_URL'], message: 'must be https outside loopback' });
-    }
-  });
+const publicUrl = { NEXTAUTH_URL: url, NEXTAUTH_SECRET: secret };
+const database = z
+  .string({ error: 'is missing' })
+  .regex(/^postgres(ql)?:\/\//, 'must start with postgres://');
+const mode = z.enum(['demo', 'production'], { error: 'must be demo or production' }).default('demo');
+const fileStore = {
+  /** Names and keys of the hosted file service, as its SDK wants them. */
+  UPLOADTHING_TOKEN: z.string({ error: 'is missing' }).min(1, 'is empty'),
+  /** Folder for verified copies of files fetched from the file service. */
+  MOTEBOOK_CACHE: z.string({ error: 'is missing' }).min(1, 'is empty'),
+};
+
+/** Each process is given, and checks, only what it needs. */
+const webShape = z.object({
+  MOTEBOOK_MODE: mode,
+  /** What the browser connects to for live editing, e.g. ws://127.0.0.1:4311 */
+  MOTEBOOK_WS_URL: url,
+  /** Origin of the file service: where browsers send uploads. */
+  MOTEBOOK_FILES_ORIGIN: url,
+  MOTEBOOK_DATABASE_APP: database,
+  ...publicUrl,
+  ...fileStore,
+});
+const wsShape = z.object({
+  MOTEBOOK_MODE: mode,
+  MOTEBOOK_WS_PORT: port(4311),
+  MOTEBOOK_DATABASE_WS: database,
+  ...publicUrl,
+});
+const projectorShape = z.object({ MOTEBOOK_MODE: mode, MOTEBOOK_DATABASE_APP: database, ...fileStore });
 
 export type Settings = z.infer<typeof settingsShape>;
-export type Env = z.infer<typeof envShape>;
+export type WebEnv = z.infer<typeof webShape>;
+export type WsEnv = z.infer<typeof wsShape>;
+export type ProjectorEnv = z.infer<typeof projectorShape>;
 
 /** True for the names under which a machine reaches only itself. */
 export function isLoopback(hostname: string): boolean {
-  return hostname === 'localhost' || hostname === '[::1]' || hostname === '::1' || /^127(\.\d{1,3}){3}$/.test(hostname);
+  return (
+    hostname === 'localhost' ||
+    hostname === '[::1]' ||
+    hostname === '::1' ||
+    /^127(\.\d{1,3}){3}$/.test(hostname)
+  );
 }
 
 function check<T>(shape: z.ZodType<T>, values: NodeJS.ProcessEnv): T {
@@ -75,10 +92,35 @@ export function readSettings(values: NodeJS.ProcessEnv = process.env): Settings 
   return check(settingsShape, values);
 }
 
-let cached: Env | null = null;
-
-/** What a running process needs; checked on first use, because a build imports modules without any of it. */
-export function env(): Env {
-  cached ??= check(envShape, process.env);
-  return cached;
+/** Reads on first use, because a build imports modules without any environment; then always the same answer. */
+function once<T>(read: () => T): () => T {
+  let cached: { value: T } | null = null;
+  return () => (cached ??= { value: read() }).value;
 }
+
+/** In production the cookie must never travel in the open. */
+function checkPublicUrl(mode: string, address: string): void {
+  const { protocol, hostname } = new URL(address);
+  if (mode === 'production' && protocol !== 'https:' && !isLoopback(hostname)) {
+    throw new Error(
+      'The environment is not right (see .env.example):\n  NEXTAUTH_URL must be https outside loopback',
+    );
+  }
+}
+
+/** Environment of the web process. @throws Error listing every fault. */
+export const env = once((): WebEnv => {
+  const values = check(webShape, process.env);
+  checkPublicUrl(values.MOTEBOOK_MODE, values.NEXTAUTH_URL);
+  return values;
+});
+
+/** Environment of the websocket server. @throws Error listing every fault. */
+export const wsEnv = once((): WsEnv => {
+  const values = check(wsShape, process.env);
+  checkPublicUrl(values.MOTEBOOK_MODE, values.NEXTAUTH_URL);
+  return values;
+});
+
+/** Environment of the projector. @throws Error listing every fault. */
+export const projectorEnv = once((): ProjectorEnv => check(projectorShape, process.env));

@@ -5,14 +5,23 @@ export const ERRORS = {
   forbidden: { status: 403, sentence: 'Your role here does not allow this. Ask an owner of the notebook.' },
   'foreign-origin': { status: 403, sentence: 'This request came from another site and was refused.' },
   'not-found': { status: 404, sentence: 'There is nothing here that you may see.' },
-  'bad-input': { status: 400, sentence: 'Something in the form is not right. The remark beside the field says what.' },
-  conflict: { status: 409, sentence: 'Somebody changed this in the meantime. Reload the page and try again.' },
+  'bad-input': {
+    status: 400,
+    sentence: 'Something in the form is not right. The remark beside the field says what.',
+  },
+  conflict: {
+    status: 409,
+    sentence: 'Somebody changed this in the meantime. Reload the page and try again.',
+  },
   locked: { status: 409, sentence: 'This entry is no longer a draft, so it cannot be edited.' },
   'too-big': { status: 413, sentence: 'The file is larger than allowed.' },
   'wrong-type': { status: 415, sentence: 'The content of this file is not what its name says.' },
   unreadable: { status: 422, sentence: 'The file could not be read as trajectories.' },
   'slow-down': { status: 429, sentence: 'Too many attempts. Wait a little and try again.' },
-  'storage-down': { status: 503, sentence: 'The store cannot be reached at the moment. Nothing was changed; try again.' },
+  'storage-down': {
+    status: 503,
+    sentence: 'The store cannot be reached at the moment. Nothing was changed; try again.',
+  },
   unexpected: { status: 500, sentence: 'Something went wrong on our side. Nothing was changed.' },
 } as const;
 

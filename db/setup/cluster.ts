@@ -1,5 +1,13 @@
 import { spawnSync } from 'node:child_process';
-import { appendFileSync, chmodSync, existsSync, mkdirSync, readFileSync, rmSync, writeFileSync } from 'node:fs';
+import {
+  appendFileSync,
+  chmodSync,
+  existsSync,
+  mkdirSync,
+  readFileSync,
+  rmSync,
+  writeFileSync,
+} from 'node:fs';
 import path from 'node:path';
 import { getPostgresBinaries, isRoot } from './postgres-binaries';
 import { DATABASE_NAME, DATABASE_ROLES, roleStatements, type DatabaseRole } from './roles';
@@ -36,7 +44,8 @@ export function ensureCluster(options: {
   chmodSync(folder, 0o711);
   const secrets = ensureSecrets(folder);
   const data = path.join(folder, 'pg');
-  const run = (program: string, args: string[], input?: string) => runAsServer(path.join(binaries, program), args, input);
+  const run = (program: string, args: string[], input?: string) =>
+    runAsServer(path.join(binaries, program), args, input);
 
   if (!existsSync(path.join(data, 'motebook-complete'))) {
     say('Making a database cluster …');
@@ -102,7 +111,9 @@ host all all ::/0 reject`;
 
 /** Runs a server program as the user it wants: as root, PostgreSQL's programs run as the user postgres. */
 function runAsServer(program: string, args: string[], input?: string): string {
-  const [command, ...rest] = isRoot() ? ['runuser', '-u', 'postgres', '--', program, ...args] : [program, ...args];
+  const [command, ...rest] = isRoot()
+    ? ['runuser', '-u', 'postgres', '--', program, ...args]
+    : [program, ...args];
   // pg_ctl leaves a server behind that would keep a pipe open for ever: its output goes to the log instead.
   const server = program.endsWith('pg_ctl');
   const ran = spawnSync(command ?? program, rest, {
@@ -114,7 +125,9 @@ function runAsServer(program: string, args: string[], input?: string): string {
   });
   const said = `${ran.stdout ?? ''}${ran.stderr ?? ''}`;
   if (ran.status !== 0) {
-    throw new Error(`${path.basename(program)} ${args.at(-1) ?? ''} failed. ${server ? 'See server.log in the data folder.' : said}`);
+    throw new Error(
+      `${path.basename(program)} ${args.at(-1) ?? ''} failed. ${server ? 'See server.log in the data folder.' : said}`,
+    );
   }
   return said;
 }

@@ -18,7 +18,10 @@ export class DemoVisitor {
 
   async signOut(): Promise<void> {
     const { csrfToken } = (await this.json('/api/auth/csrf')) as { csrfToken: string };
-    await this.send('/api/auth/signout', { method: 'POST', body: new URLSearchParams({ csrfToken, json: 'true' }) });
+    await this.send('/api/auth/signout', {
+      method: 'POST',
+      body: new URLSearchParams({ csrfToken, json: 'true' }),
+    });
   }
 
   async json(path: string, body?: unknown): Promise<unknown> {

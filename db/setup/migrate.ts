@@ -34,7 +34,8 @@ async function checkServer(client: pg.Client): Promise<void> {
     `SELECT name, setting FROM pg_settings WHERE name IN ('fsync', 'synchronous_commit', 'full_page_writes', 'data_checksums')`,
   );
   const off = rows.filter((row) => row.setting !== 'on').map((row) => row.name);
-  if (off.length > 0) throw new Error(`PostgreSQL must run with ${off.join(', ')} = on; otherwise saved text could be lost.`);
+  if (off.length > 0)
+    throw new Error(`PostgreSQL must run with ${off.join(', ')} = on; otherwise saved text could be lost.`);
   const { rows: roles } = await client.query<{ rolname: string }>(
     `SELECT rolname FROM pg_roles WHERE rolsuper AND rolname LIKE 'motebook\\_%'`,
   );

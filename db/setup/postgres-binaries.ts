@@ -44,11 +44,20 @@ export function getPostgresBinaries(say: (line: string) => void): string {
 /** Installs a Debian package without questions. @throws Error with apt's last lines. */
 export function aptInstall(packageName: string): void {
   const env = { ...process.env, DEBIAN_FRONTEND: 'noninteractive' };
-  for (const command of [['update', '-qq'], ['install', '-y', '-qq', packageName]]) {
+  for (const command of [
+    ['update', '-qq'],
+    ['install', '-y', '-qq', packageName],
+  ]) {
     const run = spawnSync('apt-get', command, { env, encoding: 'utf8' });
     if (run.status !== 0) {
-      const last = `${run.stdout}\n${run.stderr}\n${run.error?.message ?? ''}`.trim().split('\n').slice(-6).join('\n');
-      throw new Error(`"apt-get ${command.join(' ')}" failed. Check the network and Debian's sources, then start again.\n${last}`);
+      const last = `${run.stdout}\n${run.stderr}\n${run.error?.message ?? ''}`
+        .trim()
+        .split('\n')
+        .slice(-6)
+        .join('\n');
+      throw new Error(
+        `"apt-get ${command.join(' ')}" failed. Check the network and Debian's sources, then start again.\n${last}`,
+      );
     }
   }
 }

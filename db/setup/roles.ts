@@ -11,7 +11,10 @@ export type DatabaseRole = (typeof DATABASE_ROLES)[number];
 export const DATABASE_NAME = 'motebook';
 
 /** Statements, one a line as single-user mode wants them, that make the roles and the database of a new cluster. */
-export function roleStatements(passwords: Readonly<Record<DatabaseRole, string>>, ownerMakesDatabases: boolean): string[] {
+export function roleStatements(
+  passwords: Readonly<Record<DatabaseRole, string>>,
+  ownerMakesDatabases: boolean,
+): string[] {
   const attributes = (role: DatabaseRole) =>
     `LOGIN NOSUPERUSER NOCREATEROLE NOREPLICATION ${role === 'motebook_owner' && ownerMakesDatabases ? 'CREATEDB' : 'NOCREATEDB'}`;
   return [

@@ -20,7 +20,9 @@ export function ensureSecrets(folder: string): Secrets {
   const file = path.join(folder, 'secrets.json');
   if (existsSync(file)) return JSON.parse(readFileSync(file, 'utf8')) as Secrets;
   const secrets: Secrets = {
-    databasePasswords: Object.fromEntries(DATABASE_ROLES.map((role) => [role, random(24)])) as Secrets['databasePasswords'],
+    databasePasswords: Object.fromEntries(
+      DATABASE_ROLES.map((role) => [role, random(24)]),
+    ) as Secrets['databasePasswords'],
     signIn: random(32),
     fileServiceKey: `sk_local_${random(24)}`,
     fileServiceApp: random(6),
