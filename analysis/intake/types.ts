@@ -87,7 +87,11 @@ export interface Inspection {
   /** The reading as guessed; complete except for what `missing` lists as required. */
   readonly spec: ReadingSpec;
   /** Column names as the header has them (or "column 1" … when there is no header), and what was found in them. */
-  readonly columns: readonly { readonly name: string; readonly unit: string | null; readonly sample: readonly string[] }[];
+  readonly columns: readonly {
+    readonly name: string;
+    readonly unit: string | null;
+    readonly sample: readonly string[];
+  }[];
   /** First rows as text cells, for the preview table. At most 12. */
   readonly rows: readonly (readonly string[])[];
   /** Required and absent (a reading cannot be made without them): frameInterval, pixelSize. */
@@ -118,7 +122,11 @@ export interface ReadingSummary {
 
 /** The paths in the plane for the preview: at most 60 tracks of at most 400 points each, micrometres. */
 export interface PathPreview {
-  readonly tracks: readonly { readonly id: string; readonly x: readonly number[]; readonly y: readonly number[] }[];
+  readonly tracks: readonly {
+    readonly id: string;
+    readonly x: readonly number[];
+    readonly y: readonly number[];
+  }[];
   readonly shown: number;
   readonly of: number;
 }

@@ -1,0 +1,37 @@
+import type { Track } from './prepare';
+
+/** Displacements of a run of consecutive frames: one array an axis, micrometres, all of the same length ≥ 1. */
+export interface Segment {
+  readonly track: number;
+  readonly displacements: readonly Float64Array[];
+}
+
+/**
+ * Series longer than this are cut: a sine transform of a million points would take minutes, and the one displacement
+ * lost at each cut in 16,384 is nothing.
+ */
+export const LONGEST_SERIES = 16_384;
+
+/** Cuts tracks at their gaps. A displacement exists only between frames f and f + 1 that are both present. */
+export function segmentsOf(tracks: readonly Track[]): { segments: Segment[]; gaps: number } {
+  const segments: Segment[] = [];
+  let gaps = 0;
+  for (const [index, track] of tracks.entries()) {
+    let start = 0;
+    for (let i = 1; i <= track.frames.length; i++) {
+      const goesOn = i < track.frames.length && track.frames[i]! === track.frames[i - 1]! + 1;
+      if (goesOn && i - start <= LONGEST_SERIES) continue;
+      if (i < track.frames.length && !goesOn) gaps += 1;
+      if (i - start >= 2)
+        segments.push({ track: index, displacements: track.axes.map((axis) => differences(axis, start, i)) });
+      start = i;
+    }
+  }
+  return { segments, gaps };
+}
+
+function differences(axis: Float64Array, start: number, end: number): Float64Array {
+  const steps = new Float64Array(end - start - 1);
+  for (let i = 0; i < steps.length; i++) steps[i] = axis[start + i + 1]! - axis[start + i]!;
+  return steps;
+}
