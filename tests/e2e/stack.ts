@@ -47,15 +47,17 @@ export async function newPlace(options: { demo: boolean }): Promise<Record<strin
 
 /** Runs `node start.mjs` and waits until it says that the product is ready. */
 export async function startStack(place: Record<string, string>): Promise<Stack> {
-  const child = spawn(process.execPath, ['start.mjs'], {
+  // What vitest says of itself is no business of the product's.
+  const { NODE_ENV: _mode, VITEST: _vitest, ...inherited } = process.env;
+  const child: ChildProcess = spawn(process.execPath, ['start.mjs'], {
     cwd: PROJECT,
-    env: { ...process.env, NODE_ENV: undefined, VITEST: undefined, ...place },
+    env: { ...inherited, ...place } as NodeJS.ProcessEnv,
     stdio: ['ignore', 'pipe', 'pipe'],
   });
   let printed = '';
   for (const stream of [child.stdout, child.stderr]) {
-    stream.setEncoding('utf8');
-    stream.on('data', (text: string) => (printed += text));
+    stream?.setEncoding('utf8');
+    stream?.on('data', (text: string) => (printed += text));
   }
   const url = await firstAddress(child, () => printed);
   return {
