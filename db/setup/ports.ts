@@ -1,6 +1,6 @@
-import { createServer } from 'node:net';
+import { connect, createServer } from 'node:net';
 
-/** Whether somebody listens on a loopback port. */
+/** Whether a program holds a loopback port: only trying to take it tells for sure. */
 export function isBusy(port: number): Promise<boolean> {
   return new Promise((resolve) => {
     const probe = createServer();
@@ -9,41 +9,65 @@ export function isBusy(port: number): Promise<boolean> {
   });
 }
 
-/** @throws Error that names each busy port, its variable and the remedy. */
+/**
+ * @param ports - port by the name of the variable that sets it.
+ * @throws Error that names each busy port, its variable and the remedy; also when two variables name one port.
+ */
 export async function refuseBusyPorts(ports: Readonly<Record<string, number>>): Promise<void> {
-  const busy: string[] = [];
-  for (const [variable, port] of Object.entries(ports))
-    if (await isBusy(port)) busy.push(`  ${variable} = ${port}`);
-  if (busy.length === 0) return;
+  const named = Object.entries(ports);
+  for (const [variable, port] of named) {
+    const other = named.find(([name, value]) => value === port && name !== variable);
+    if (other) throw new Error(`${variable} and ${other[0]} are both ${port}. Choose another port for one of them.`);
+  }
+  const busy: [string, number][] = [];
+  for (const [variable, port] of named) if (await isBusy(port)) busy.push([variable, port]);
+  const [first] = busy;
+  if (!first) return;
+  const list = busy.map(([variable, port]) => `  port ${port} (${variable})`).join('\n');
+  const other = first[1] + 1000 > 65_535 ? first[1] - 1000 : first[1] + 1000;
   throw new Error(
-    `Another program listens on a port that Motebook needs:\n${busy.join('\n')}\nEnd that program, or choose another port, for example: ${busy[0]?.trim().split(' ')[0]}=${Number(Object.values(ports)[0]) + 1000} npm start`,
+    `Another program uses a port that Motebook needs:\n${list}\nEnd that program, or choose another port, for example: ${first[0]}=${other} npm start`,
   );
 }
 
-/** Polls an address until it answers. @throws Error after `seconds`. */
-export async function waitForAnswer(url: string, seconds: number): Promise<void> {
+/** Polls an address until it answers with something else than a fault. @throws Error after `seconds`, or `signal`'s reason. */
+export function waitForAnswer(url: string, seconds: number, signal: AbortSignal): Promise<void> {
+  const answers = async () => {
+    const response = await fetch(url, { redirect: 'manual', signal });
+    await response.body?.cancel();
+    return response.status < 500;
+  };
+  return poll(answers, `${url} does not answer`, seconds, signal);
+}
+
+/** Polls until somebody listens on a loopback port. @throws Error after `seconds`, or `signal`'s reason. */
+export function waitForListener(port: number, what: string, seconds: number, signal: AbortSignal): Promise<void> {
+  return poll(() => isListening(port), `${what} does not listen on port ${port}`, seconds, signal);
+}
+
+async function poll(
+  ready: () => Promise<boolean>,
+  complaint: string,
+  seconds: number,
+  signal: AbortSignal,
+): Promise<void> {
   const deadline = Date.now() + seconds * 1000;
   for (;;) {
-    try {
-      const response = await fetch(url, { redirect: 'manual' });
-      if (response.status < 500) return;
-    } catch {
-      // Not listening yet.
-    }
-    if (Date.now() > deadline)
-      throw new Error(`${url} does not answer after ${seconds} s. See the logs in the data folder.`);
-    await new Promise((resolve) => setTimeout(resolve, 150));
+    signal.throwIfAborted();
+    if (await ready().catch(() => false)) return;
+    if (Date.now() > deadline) throw new Error(`${complaint} after ${seconds} s. See the logs in the data folder.`);
+    await new Promise((resolve) => setTimeout(resolve, 100));
   }
 }
 
-/** Polls until somebody listens on a loopback port. @throws Error after `seconds`. */
-export async function waitForListener(port: number, what: string, seconds: number): Promise<void> {
-  const deadline = Date.now() + seconds * 1000;
-  while (!(await isBusy(port))) {
-    if (Date.now() > deadline)
-      throw new Error(
-        `${what} does not listen on port ${port} after ${seconds} s. See its log in the data folder.`,
-      );
-    await new Promise((resolve) => setTimeout(resolve, 100));
-  }
+/** By connecting: trying to take the port, as `isBusy` does, would get in the way of the program that is about to. */
+function isListening(port: number): Promise<boolean> {
+  return new Promise((resolve) => {
+    const socket = connect(port, '127.0.0.1');
+    socket.once('connect', () => {
+      socket.destroy();
+      resolve(true);
+    });
+    socket.once('error', () => resolve(false));
+  });
 }

@@ -23,5 +23,7 @@ export function roleStatements(
     `CREATE DATABASE ${DATABASE_NAME} OWNER motebook_owner;`,
     `REVOKE ALL ON DATABASE ${DATABASE_NAME} FROM PUBLIC;`,
     `GRANT CONNECT ON DATABASE ${DATABASE_NAME} TO ${DATABASE_ROLES.join(', ')};`,
+    // Copying a database needs a connection to another one; nothing else does.
+    ...(ownerMakesDatabases ? [] : ['REVOKE ALL ON DATABASE postgres, template1 FROM PUBLIC;']),
   ];
 }

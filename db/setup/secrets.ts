@@ -15,10 +15,17 @@ export interface Secrets {
 
 const random = (bytes: number) => randomBytes(bytes).toString('hex');
 
+/** The secrets of a data folder, or null when none were made yet. */
+export function findSecrets(folder: string): Secrets | null {
+  const file = path.join(folder, 'secrets.json');
+  return existsSync(file) ? (JSON.parse(readFileSync(file, 'utf8')) as Secrets) : null;
+}
+
 /** The secrets of a data folder, made on first use; readable by this user only. */
 export function ensureSecrets(folder: string): Secrets {
+  const found = findSecrets(folder);
+  if (found) return found;
   const file = path.join(folder, 'secrets.json');
-  if (existsSync(file)) return JSON.parse(readFileSync(file, 'utf8')) as Secrets;
   const secrets: Secrets = {
     databasePasswords: Object.fromEntries(
       DATABASE_ROLES.map((role) => [role, random(24)]),

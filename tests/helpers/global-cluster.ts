@@ -16,16 +16,16 @@ declare module 'vitest' {
 }
 
 /** One PostgreSQL for all tests of a run; every test copies the migrated database, which nobody else connects to. */
-export default async function setup(project: TestProject): Promise<() => void> {
+export default async function setup(project: TestProject): Promise<() => Promise<void>> {
   const folder = mkdtempSync(path.join(tmpdir(), 'motebook-test-'));
   const port = await freePort();
-  const cluster = ensureCluster({ folder, port, say: () => undefined, ownerMakesDatabases: true });
+  const cluster = await ensureCluster({ folder, port, say: () => undefined, ownerMakesDatabases: true });
   await migrateDatabase(cluster.url('motebook_owner'));
   project.provide('databasePort', port);
   project.provide('databasePasswords', cluster.secrets.databasePasswords);
   project.provide('clusterFolder', folder);
-  return () => {
-    cluster.stop();
+  return async () => {
+    await cluster.stop();
     rmSync(folder, { recursive: true, force: true });
   };
 }
