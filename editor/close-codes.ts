@@ -1,7 +1,16 @@
 /** What the websocket server and the editor say to each other beside the stock frames (integrity rule C13). */
 
 /** Frame types beside the stock ones (0 sync, 1 awareness). 104 {seq}: results were projected up to seq; 105: title or date changed. */
-export const FRAME = { sync: 0, awareness: 1, ack: 100, refused: 101, state: 102, hello: 103, projected: 104, entry: 105 } as const;
+export const FRAME = {
+  sync: 0,
+  awareness: 1,
+  ack: 100,
+  refused: 101,
+  state: 102,
+  hello: 103,
+  projected: 104,
+  entry: 105,
+} as const;
 
 /** Why a frame was refused. The text stays in the page, marked, with what to do. */
 export const REFUSALS = [

@@ -25,7 +25,8 @@ export const DiffusionBlock = Node.create({
         name,
         {
           default: byDefault,
-          parseHTML: (element: HTMLElement) => parseJson(element.getAttribute(attributeName(name)), byDefault),
+          parseHTML: (element: HTMLElement) =>
+            parseJson(element.getAttribute(attributeName(name)), byDefault),
           renderHTML: (attributes: Record<string, unknown>) => ({
             [attributeName(name)]: JSON.stringify(attributes[name]),
           }),

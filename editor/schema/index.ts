@@ -8,7 +8,10 @@ export const FRAGMENT = 'default';
 /** Nodes and marks of an entry, in order. DOM-free: the servers use the same list as the page. */
 export const schemaExtensions: AnyExtension[] = [
   // Collaboration brings its own undo, which undoes one's own changes only.
-  StarterKit.configure({ undoRedo: false, link: { openOnClick: false, protocols: ['http', 'https', 'mailto'] } }),
+  StarterKit.configure({
+    undoRedo: false,
+    link: { openOnClick: false, protocols: ['http', 'https', 'mailto'] },
+  }),
   DiffusionBlock,
 ];
 

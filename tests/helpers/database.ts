@@ -17,7 +17,9 @@ export interface TestDatabase {
 export async function createTestDatabase(): Promise<TestDatabase> {
   const name = `test_${randomBytes(6).toString('hex')}`;
   await asOwner((owner) => owner.query(`CREATE DATABASE ${name} TEMPLATE ${DATABASE_NAME}`));
-  const urls = Object.fromEntries(DATABASE_ROLES.map((role) => [role, url(role, name)])) as TestDatabase['urls'];
+  const urls = Object.fromEntries(
+    DATABASE_ROLES.map((role) => [role, url(role, name)]),
+  ) as TestDatabase['urls'];
   const app = connect(urls.motebook_app, { max: 6, name: 'test-app' });
   const ws = connect(urls.motebook_ws, { max: 6, name: 'test-ws' });
   const owner = connect(urls.motebook_owner, { max: 4, name: 'test-owner' });

@@ -8,7 +8,8 @@ let running = 0;
 const next = () => (running += 1);
 
 /** Any valid argon2id string; tests that sign in make a real one with hashPassword. */
-const SOME_HASH = '$argon2id$v=19$m=47104,t=1,p=1$c29tZXNhbHRzb21lc2FsdA$Y2hlY2tzdW1jaGVja3N1bWNoZWNrc3VtY2hlY2tzdW0';
+const SOME_HASH =
+  '$argon2id$v=19$m=47104,t=1,p=1$c29tZXNhbHRzb21lc2FsdA$Y2hlY2tzdW1jaGVja3N1bWNoZWNrc3VtY2hlY2tzdW0';
 
 export async function makeLab(db: Connection): Promise<void> {
   await db.insert(lab).values({ name: 'Test group', timeZone: 'Europe/Berlin' }).onConflictDoNothing();
@@ -17,7 +18,14 @@ export async function makeLab(db: Connection): Promise<void> {
 /** A person who is signed in. */
 export async function makePerson(
   db: Connection,
-  given: { role?: PersonRole; admin?: boolean; active?: boolean; name?: string; login?: string; passwordHash?: string } = {},
+  given: {
+    role?: PersonRole;
+    admin?: boolean;
+    active?: boolean;
+    name?: string;
+    login?: string;
+    passwordHash?: string;
+  } = {},
 ): Promise<Actor> {
   const n = next();
   const handle = given.login ?? `person${n}`;
@@ -43,7 +51,12 @@ export async function makeLogin(db: Connection, personId: string): Promise<strin
   return row.id;
 }
 
-export async function makeMember(db: Connection, notebookId: string, actor: Actor, role: MemberRole): Promise<void> {
+export async function makeMember(
+  db: Connection,
+  notebookId: string,
+  actor: Actor,
+  role: MemberRole,
+): Promise<void> {
   await db.insert(notebookMember).values({ notebookId, personId: actor.personId, role });
 }
 
@@ -103,4 +116,3 @@ export async function makeAttachment(
   if (!row) throw new Error('no attachment was made');
   return row.id;
 }
-

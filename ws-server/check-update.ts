@@ -1,0 +1,93 @@
+import * as Y from 'yjs';
+import type { Refusal } from '../editor/close-codes';
+import { entrySchema, FRAGMENT } from '../editor/schema/index';
+import { LIMITS } from './limits';
+
+/**
+ * Checks an update before it is stored or applied (integrity rule C4). Yjs itself accepts anything: frames that burn
+ * somebody else's clock, that write under another root, or whose content the editor does not know. Attribution never
+ * rests on Yjs ids, but a client may only extend the id that its account registered, without a gap.
+ */
+export interface UpdateContext {
+  /** The committed document. */
+  readonly doc: Y.Doc;
+  /** Clock up to which a client's content is committed or on its way into the store. */
+  known(client: number): number;
+  /** The id that this socket registered. */
+  readonly ownClient: number;
+}
+
+export type UpdateCheck =
+  | { readonly ok: true; readonly nothingNew: true }
+  | { readonly ok: true; readonly nothingNew: false; readonly ownClock: number }
+  | { readonly ok: false; readonly code: Refusal };
+
+const NODES = new Set(Object.keys(entrySchema.nodes));
+const MARKS = new Set(Object.keys(entrySchema.marks));
+const ATTRIBUTES = new Set(
+  Object.values(entrySchema.nodes).flatMap((type) => Object.keys(type.spec.attrs ?? {})),
+);
+
+const refuse = (code: Refusal): UpdateCheck => ({ ok: false, code });
+
+export function checkUpdate(payload: Uint8Array, context: UpdateContext): UpdateCheck {
+  let decoded: ReturnType<typeof Y.decodeUpdate>;
+  try {
+    decoded = Y.decodeUpdate(payload);
+  } catch {
+    return refuse('schema');
+  }
+  const { known, ownClient } = context;
+  let ownClock = known(ownClient);
+  let length = 0;
+  for (const struct of decoded.structs) {
+    const { client, clock } = struct.id;
+    if (struct instanceof Y.Skip) return refuse('gap');
+    if (clock + struct.length <= known(client)) continue;
+    if (client !== ownClient) return refuse('foreign-id');
+    if (clock > ownClock) return refuse('gap');
+    length += struct.length;
+    if (length > LIMITS.frameLength) return refuse('too-big');
+    if (struct instanceof Y.Item && !isAllowed(struct)) return refuse('schema');
+    ownClock = Math.max(ownClock, clock + struct.length);
+  }
+  for (const [client, ranges] of decoded.ds.clients) {
+    const end = client === ownClient ? ownClock : known(client);
+    if (ranges.some((range) => range.clock + range.len > end)) return refuse('gap');
+  }
+  if (length === 0 && deletionsAreKnown(decoded.ds, context.doc)) return { ok: true, nothingNew: true };
+  return { ok: true, nothingNew: false, ownClock };
+}
+
+/** Whether an item is content that the editor's schema knows, in the one place where it may stand. */
+function isAllowed(item: Y.Item): boolean {
+  // While decoding, a parent is the name of a root, the id of an item, or unknown (taken from a neighbour).
+  const parent = item.parent as unknown;
+  if (typeof parent === 'string' && parent !== FRAGMENT) return false;
+  const { content, parentSub } = item;
+  if (parentSub !== null && !ATTRIBUTES.has(parentSub)) return false;
+  if (content instanceof Y.ContentString || content instanceof Y.ContentDeleted) return parentSub === null;
+  // Two marks of one kind on the same text get a hash behind their name.
+  if (content instanceof Y.ContentFormat) return MARKS.has(content.key.split('--')[0] ?? '');
+  if (content instanceof Y.ContentAny) return parentSub !== null;
+  if (content instanceof Y.ContentType) {
+    const { type } = content;
+    if (type instanceof Y.XmlText) return true;
+    return type instanceof Y.XmlElement && !(type instanceof Y.XmlHook) && NODES.has(type.nodeName);
+  }
+  return false;
+}
+
+/** An idle reader's answer repeats all deletions it knows of: nothing new, so no row. */
+function deletionsAreKnown(ds: ReturnType<typeof Y.decodeUpdate>['ds'], doc: Y.Doc): boolean {
+  if (ds.clients.size === 0) return true;
+  const stored = Y.createDeleteSetFromStructStore(doc.store);
+  for (const [client, ranges] of ds.clients) {
+    const have = stored.clients.get(client) ?? [];
+    for (const range of ranges) {
+      const end = range.clock + range.len;
+      if (!have.some((one) => one.clock <= range.clock && one.clock + one.len >= end)) return false;
+    }
+  }
+  return true;
+}
