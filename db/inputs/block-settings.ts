@@ -94,7 +94,12 @@ export function settingsOf(block: BlockAttributes): AnalysisSettings {
     minTrackFrames: block.minTrackFrames,
     exposure: seconds !== null ? { seconds } : fraction !== null ? { fraction } : null,
     sigma: block.sigma,
-    medium: block.medium !== null ? { name: block.medium } : block.viscosity !== null ? { viscosity: block.viscosity } : null,
+    medium:
+      block.medium !== null
+        ? { name: block.medium }
+        : block.viscosity !== null
+          ? { viscosity: block.viscosity }
+          : null,
     temperature: block.temperature,
     particleDiameter: block.particleDiameter,
     geometry: block.geometry,

@@ -41,7 +41,14 @@ export const readingSpec = z.object({
   exposure: z
     .union([
       z.object({ seconds: decimalText }).strict(),
-      z.object({ fraction: z.string().trim().regex(/^(0(\.\d{1,15})?|1(\.0{1,15})?)$/, 'Enter a fraction from 0 to 1.') }).strict(),
+      z
+        .object({
+          fraction: z
+            .string()
+            .trim()
+            .regex(/^(0(\.\d{1,15})?|1(\.0{1,15})?)$/, 'Enter a fraction from 0 to 1.'),
+        })
+        .strict(),
     ])
     .nullable(),
 });

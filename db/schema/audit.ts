@@ -22,5 +22,8 @@ export const audit = pgTable(
     after: jsonb('after'),
     reason: text('reason').notNull().default(''),
   },
-  (table) => [index('audit_by_entry').on(table.entryId, table.at), index('audit_by_person').on(table.personId, table.at)],
+  (table) => [
+    index('audit_by_entry').on(table.entryId, table.at),
+    index('audit_by_person').on(table.personId, table.at),
+  ],
 );

@@ -1,5 +1,17 @@
 import { sql } from 'drizzle-orm';
-import { bigint, check, date, index, integer, pgEnum, pgTable, primaryKey, text, unique, uuid } from 'drizzle-orm/pg-core';
+import {
+  bigint,
+  check,
+  date,
+  index,
+  integer,
+  pgEnum,
+  pgTable,
+  primaryKey,
+  text,
+  unique,
+  uuid,
+} from 'drizzle-orm/pg-core';
 import { bytea, momentByDatabase } from './columns';
 import { notebook } from './notebook';
 import { login, person } from './person';

@@ -1,4 +1,15 @@
-import { bigint, doublePrecision, index, integer, jsonb, pgEnum, pgTable, primaryKey, text, uuid } from 'drizzle-orm/pg-core';
+import {
+  bigint,
+  doublePrecision,
+  index,
+  integer,
+  jsonb,
+  pgEnum,
+  pgTable,
+  primaryKey,
+  text,
+  uuid,
+} from 'drizzle-orm/pg-core';
 import type { AnalysisFailure, AnalysisResult, AnalysisSettings } from '../../analysis/types';
 import { momentByDatabase } from './columns';
 import { entry } from './entry';

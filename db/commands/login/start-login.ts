@@ -32,7 +32,9 @@ export async function startLogin(
   const right = await verify(found?.passwordHash ?? (await nobodysHash), input.password);
   return db.transaction(async (tx) => {
     if (!found || !right || !found.active) {
-      await tx.insert(audit).values({ kind: 'login.failed', personId: found?.id ?? null, subject: name.slice(0, 100) });
+      await tx
+        .insert(audit)
+        .values({ kind: 'login.failed', personId: found?.id ?? null, subject: name.slice(0, 100) });
       return null;
     }
     const [row] = await tx

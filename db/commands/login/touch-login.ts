@@ -8,6 +8,10 @@ export async function touchLogin(db: Connection, loginId: string): Promise<void>
     .update(login)
     .set({ seenAt: sql`motebook_now()` })
     .where(
-      and(eq(login.id, loginId), isNull(login.endedAt), sql`${login.seenAt} < motebook_now() - interval '1 minute'`),
+      and(
+        eq(login.id, loginId),
+        isNull(login.endedAt),
+        sql`${login.seenAt} < motebook_now() - interval '1 minute'`,
+      ),
     );
 }

@@ -4,7 +4,8 @@ import { AppError } from '../../errors';
 import { may, type Actor, type InEntry } from '../../policies/may';
 import { entry, notebook, notebookMember } from '../../schema/index';
 
-export type EntryAction = 'entry.read' | 'entry.write' | 'attachment.read' | 'attachment.add' | 'reading.create';
+export type EntryAction =
+  'entry.read' | 'entry.write' | 'attachment.read' | 'attachment.add' | 'reading.create';
 
 /**
  * The entry with the actor's place in its notebook, after the policy has allowed `action`.
