@@ -48,7 +48,7 @@ export class Flusher {
 
   add(update: PendingUpdate): void {
     this.waiting.push(update);
-    this.running ??= this.run().finally(() => (this.running = null));
+    this.running ??= this.run();
   }
 
   /** Resolves when nothing waits any more. */
@@ -57,15 +57,20 @@ export class Flusher {
   }
 
   private async run(): Promise<void> {
-    while (this.waiting.length > 0) {
-      const groups = groupUpdates(this.takeBatch());
-      const outcomes = await this.append(groups);
-      for (const [at, group] of groups.entries()) {
-        const outcome = outcomes[at]!;
-        for (const [i, update] of group.updates.entries()) {
-          update.done('seqs' in outcome ? { seq: outcome.seqs[i]! } : outcome);
+    try {
+      while (this.waiting.length > 0) {
+        const groups = groupUpdates(this.takeBatch());
+        const outcomes = await this.append(groups);
+        for (const [at, group] of groups.entries()) {
+          const outcome = outcomes[at]!;
+          for (const [i, update] of group.updates.entries()) {
+            update.done('seqs' in outcome ? { seq: outcome.seqs[i]! } : outcome);
+          }
         }
       }
+    } finally {
+      // Here and not in a later turn: an update that comes in between would find a runner that has left.
+      this.running = null;
     }
   }
 
