@@ -142,7 +142,8 @@ class FileService {
       uploadedAt: known.uploadedAt ?? Date.now(),
     };
     this.store.save(file);
-    const answer = await this.complete(file, String(request.headers.origin ?? ''));
+    // The service's own address: where the product says that it has dealt with the file.
+    const answer = await this.complete(file, `http://${request.headers.host}`);
     json(response, 'error' in (answer as object) ? 400 : 200, answer);
   }
 
