@@ -20,7 +20,7 @@ export function VerdictGlyph({ verdict, size = 16 }: { verdict: Verdict; size?: 
       viewBox="0 0 16 16"
       width={size}
       height={size}
-      className="inline-block shrink-0 fill-none stroke-current"
+      className="inline-block shrink-0 self-center fill-none stroke-current"
       strokeLinecap="round"
       strokeLinejoin="round"
     >
@@ -47,7 +47,7 @@ export function VerdictMark({
   return (
     <span
       className={classes(
-        'inline-flex items-center gap-1.5 whitespace-nowrap',
+        'inline-flex items-baseline gap-1.5 whitespace-nowrap',
         textColours[verdict],
         className,
       )}
