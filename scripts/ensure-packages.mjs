@@ -1,42 +1,51 @@
-// Checks Node and installs the npm packages when they are missing or the lock file has changed. Plain Node.
+// Installs the npm packages when they are missing or the lock file has changed. Plain Node.
 import { spawnSync } from 'node:child_process';
-import { createHash } from 'node:crypto';
-import { existsSync, readFileSync, writeFileSync } from 'node:fs';
+import { existsSync, readFileSync } from 'node:fs';
 import path from 'node:path';
-
-const OLDEST_NODE = [20, 12];
 
 /**
  * @param {string} project - folder of the checkout
- * @throws {Error} with the remedy, when Node is too old or the packages cannot be installed
+ * @param {(line: string) => void} say
+ * @throws {Error} with the remedy, when the packages cannot be installed
  */
-export async function ensurePackages(project) {
-  checkNode(process.versions.node);
-  const lock = readFileSync(path.join(project, 'package-lock.json'));
-  const wanted = createHash('sha256').update(lock).digest('hex');
-  const stamp = path.join(project, 'node_modules', '.motebook-lock');
-  if (existsSync(stamp) && readFileSync(stamp, 'utf8') === wanted) return;
-  console.log('Installing the npm packages (once; a minute or two) …');
+export function ensurePackages(project, say) {
+  if (arePackagesInstalled(project)) return;
+  say('Installing the npm packages (once; a minute or two) …');
   // Development packages too, whatever NODE_ENV says: the build needs them.
   const run = spawnSync('npm', ['ci', '--include=dev', '--no-fund', '--no-audit', '--loglevel=error'], {
     cwd: project,
     stdio: ['ignore', 'ignore', 'inherit'],
   });
+  if (run.error)
+    throw new Error(`npm cannot be run (${run.error.message}). Install npm, which comes with Node.`);
   if (run.status !== 0) {
-    throw new Error('The npm packages could not be installed. Check the network, then run the same command again.');
+    throw new Error(
+      'The npm packages could not be installed. Check the network, then run the same command again.',
+    );
   }
-  writeFileSync(stamp, wanted);
 }
 
 /**
- * @param {string} version - e.g. "20.12.0"
- * @throws {Error} when it is older than what the packages need
+ * Whether node_modules is what the lock file asks for, by the list that npm keeps of what it installed. It is written at
+ * the end of an installation, so one that was cut short counts as missing.
+ * @param {string} project
  */
-export function checkNode(version) {
-  const [major = 0, minor = 0] = version.split('.').map(Number);
-  const [needMajor, needMinor] = OLDEST_NODE;
-  if (major > needMajor || (major === needMajor && minor >= needMinor)) return;
-  throw new Error(
-    `Motebook needs Node ${OLDEST_NODE.join('.')} or newer; this is Node ${version}. Install Node 20 (for example from nodejs.org), then start again.`,
-  );
+export function arePackagesInstalled(project) {
+  const installed = readPackages(path.join(project, 'node_modules', '.package-lock.json'));
+  const wanted = readPackages(path.join(project, 'package-lock.json'));
+  if (!wanted) throw new Error(`package-lock.json is missing in ${project}; take the whole project again.`);
+  if (!installed) return false;
+  return Object.entries(wanted).every(([name, { version, optional }]) => {
+    const found = installed[name];
+    // Packages for other machines are optional and absent here. The project itself has the empty name.
+    return name === '' || (found ? found.version === version : optional === true);
+  });
+}
+
+/**
+ * @param {string} file
+ * @returns {Record<string, { version?: string, optional?: boolean }> | null}
+ */
+function readPackages(file) {
+  return existsSync(file) ? JSON.parse(readFileSync(file, 'utf8')).packages : null;
 }

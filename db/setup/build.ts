@@ -1,9 +1,9 @@
-import { spawnSync } from 'node:child_process';
 import { createHash } from 'node:crypto';
-import { existsSync, readdirSync, readFileSync, writeFileSync } from 'node:fs';
+import { existsSync, lstatSync, readdirSync, readFileSync, rmSync, writeFileSync } from 'node:fs';
 import path from 'node:path';
+import { end, spawnNode } from './children';
 
-/** What a build is made of; anything else (tests, papers) does not ask for a new one. */
+/** What a build is made of; anything else (tests, set-up, papers) does not ask for a new one. */
 const SOURCES = [
   'app',
   'components',
@@ -18,46 +18,56 @@ const SOURCES = [
   'tsconfig.json',
   'package-lock.json',
 ];
+const LEFT_OUT = new Set([path.join('db', 'setup')]);
 
-/** Builds the pages when their sources have changed since the last build. @throws Error when the build fails. */
-export function ensureBuild(project: string, say: (line: string) => void): void {
-  const wanted = hashOf(project, SOURCES);
+/**
+ * Builds the pages when their sources have changed since the last build.
+ * @throws Error with what the build printed, when it fails; `signal`'s reason, when that ends it.
+ */
+export async function ensureBuild(
+  project: string,
+  say: (line: string) => void,
+  signal: AbortSignal,
+): Promise<void> {
+  const wanted = hashOf(project, SOURCES, LEFT_OUT);
   const stamp = path.join(project, '.next', 'motebook-sources');
   if (existsSync(stamp) && readFileSync(stamp, 'utf8') === wanted) return;
   say('Building the pages (a minute or two; only when the sources have changed) …');
-  const run = spawnSync(process.execPath, ['node_modules/next/dist/bin/next', 'build'], {
-    cwd: project,
-    encoding: 'utf8',
-    maxBuffer: 64 * 1024 * 1024,
-    env: { ...process.env, NODE_ENV: 'production', NEXT_TELEMETRY_DISABLED: '1' },
+  // A build that is cut short leaves pages that fit nobody's sources.
+  rmSync(stamp, { force: true });
+  const build = spawnNode(project, {
+    name: 'build',
+    args: ['node_modules/next/dist/bin/next', 'build'],
+    environment: { NODE_ENV: 'production', NEXT_TELEMETRY_DISABLED: '1' },
   });
-  if (run.status !== 0) throw new Error(`The build failed:\n${run.stdout}\n${run.stderr}`);
+  let printed = '';
+  for (const stream of [build.stdout, build.stderr])
+    stream?.on('data', (text: Buffer) => (printed += text.toString()));
+  const stop = () => void end(build);
+  signal.addEventListener('abort', stop, { once: true });
+  const code = await new Promise<number | null>((resolve, reject) => {
+    build.once('error', reject);
+    build.once('close', resolve);
+  });
+  signal.removeEventListener('abort', stop);
+  signal.throwIfAborted();
+  if (code !== 0) throw new Error(`The pages could not be built:\n${printed.trim()}`);
   writeFileSync(stamp, wanted);
 }
 
-/** SHA-256 over names and contents of files and folders, in a fixed order. */
-function hashOf(project: string, names: readonly string[]): string {
+/** SHA-256 over names and contents of files and folders, in a fixed order. Names in `leftOut` and links are passed over. */
+export function hashOf(project: string, names: readonly string[], leftOut: ReadonlySet<string>): string {
   const hash = createHash('sha256');
   const visit = (name: string) => {
     const full = path.join(project, name);
-    if (!existsSync(full)) return;
-    const entries = readdirSyncOrNull(full);
-    if (entries) {
-      for (const entry of entries.sort()) visit(path.join(name, entry));
-      return;
+    if (leftOut.has(name) || !existsSync(full)) return;
+    const stat = lstatSync(full);
+    if (stat.isDirectory()) {
+      for (const entry of readdirSync(full).sort()) visit(path.join(name, entry));
+    } else if (stat.isFile()) {
+      hash.update(`${name}\0${stat.size}\0`).update(readFileSync(full));
     }
-    const content = readFileSync(full);
-    hash.update(`${name}\0${content.length}\0`).update(content);
   };
   for (const name of names) visit(name);
   return hash.digest('hex');
-}
-
-function readdirSyncOrNull(full: string): string[] | null {
-  try {
-    return readdirSync(full);
-  } catch (error) {
-    if ((error as NodeJS.ErrnoException).code === 'ENOTDIR') return null;
-    throw error;
-  }
 }

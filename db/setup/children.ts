@@ -1,6 +1,7 @@
 import { spawn, type ChildProcess } from 'node:child_process';
-import { createWriteStream, existsSync, mkdirSync, renameSync, statSync, type WriteStream } from 'node:fs';
+import { closeSync, mkdirSync, writeSync } from 'node:fs';
 import path from 'node:path';
+import { openLog } from './log-file';
 
 export interface ChildPlan {
   readonly name: string;
@@ -9,9 +10,11 @@ export interface ChildPlan {
   readonly environment: Readonly<Record<string, string>>;
 }
 
-const LOG_BYTES = 5 * 1024 * 1024;
 const SHORTEST_PAUSE_MS = 200;
 const LONGEST_PAUSE_MS = 5_000;
+/** A process that lived this long had a good start: its next pause is short again. */
+const GOOD_START_MS = 30_000;
+const STOP_MS = 10_000;
 
 /**
  * Keeps a set of processes running: each has a log, is started again when it dies (with a growing pause), and ends with
@@ -21,13 +24,15 @@ export class Children {
   private readonly running = new Map<string, ChildProcess>();
   private readonly pauses = new Map<string, number>();
   private stopping = false;
+  /** Called whenever the process ids have changed. */
+  onChange: () => void = () => undefined;
 
   constructor(
     private readonly project: string,
     private readonly logFolder: string,
     private readonly say: (line: string) => void,
   ) {
-    mkdirSync(logFolder, { recursive: true });
+    mkdirSync(logFolder, { recursive: true, mode: 0o700 });
   }
 
   /** Process ids by name, for the note that a later start reads. */
@@ -37,65 +42,64 @@ export class Children {
 
   start(plan: ChildPlan): void {
     if (this.stopping) return;
-    const log = this.openLog(plan.name);
+    const file = path.join(this.logFolder, `${plan.name}.log`);
+    const log = openLog(file);
     const started = Date.now();
-    const child: ChildProcess = spawn(
-      process.execPath,
-      ['--import', path.join(this.project, 'db/setup/end-with-parent.mjs'), ...plan.args],
-      {
-        cwd: this.project,
-        env: { ...inherited(), ...plan.environment } as unknown as NodeJS.ProcessEnv,
-        stdio: ['ignore', 'pipe', 'pipe', 'ipc'],
-      },
-    );
-    child.stdout?.pipe(log, { end: false });
+    const child = spawnNode(this.project, plan);
+    child.stdout?.on('data', (text: Buffer) => writeSync(log, text));
     child.stderr?.on('data', (text: Buffer) => {
-      log.write(text);
+      writeSync(log, text);
       process.stderr.write(text.toString('utf8').replace(/^(?=.)/gm, `[${plan.name}] `));
     });
-    child.on('error', (error: Error) => this.say(`${plan.name} could not be started: ${error.message}`));
-    child.on('exit', (code: number | null, signal: string | null) => {
+    child.on('error', (error) => this.say(`${plan.name} could not be started: ${error.message}`));
+    // "close" comes after the last line it printed, unlike "exit".
+    child.on('close', (code, signal) => {
+      closeSync(log);
       this.running.delete(plan.name);
-      log.end();
       if (this.stopping) return;
-      // A process that lived a while had a good start: its next pause is short again.
-      const before = Date.now() - started > 30_000 ? 0 : (this.pauses.get(plan.name) ?? 0);
-      const pause = Math.min(LONGEST_PAUSE_MS, Math.max(SHORTEST_PAUSE_MS, before * 2));
-      this.pauses.set(plan.name, pause);
-      this.say(
-        `${plan.name} ended (${signal ?? `code ${code}`}); starting it again. Its log: ${this.logFile(plan.name)}`,
-      );
-      setTimeout(() => this.start(plan), pause);
+      this.say(`${plan.name} ended (${signal ?? `code ${code}`}); starting it again. Its log: ${file}`);
+      setTimeout(() => this.start(plan), this.nextPause(plan.name, Date.now() - started));
     });
     this.running.set(plan.name, child);
+    this.onChange();
   }
 
-  /** Asks every process to end, waits, and after ten seconds insists. */
+  /** Ends the processes one after the other, the last started first: whoever uses a service ends before it. */
   async stop(): Promise<void> {
     this.stopping = true;
-    const ending = [...this.running.values()].map(
-      (child) =>
-        new Promise<void>((resolve) => {
-          const insist = setTimeout(() => child.kill('SIGKILL'), 10_000);
-          child.once('exit', () => {
-            clearTimeout(insist);
-            resolve();
-          });
-          child.kill('SIGTERM');
-        }),
-    );
-    await Promise.all(ending);
+    for (const child of [...this.running.values()].reverse()) await end(child);
   }
 
-  private logFile(name: string): string {
-    return path.join(this.logFolder, `${name}.log`);
+  private nextPause(name: string, livedMs: number): number {
+    const before = livedMs > GOOD_START_MS ? 0 : (this.pauses.get(name) ?? 0);
+    const pause = Math.min(LONGEST_PAUSE_MS, Math.max(SHORTEST_PAUSE_MS, before * 2));
+    this.pauses.set(name, pause);
+    return pause;
   }
+}
 
-  private openLog(name: string): WriteStream {
-    const file = this.logFile(name);
-    if (existsSync(file) && statSync(file).size > LOG_BYTES) renameSync(file, `${file}.old`);
-    return createWriteStream(file, { flags: 'a' });
-  }
+/** Starts node with a channel to this process; a session of its own keeps a Ctrl-C in the terminal from reaching it. */
+export function spawnNode(project: string, plan: ChildPlan): ChildProcess {
+  return spawn(
+    process.execPath,
+    ['--import', path.join(project, 'db/setup/end-with-parent.mjs'), ...plan.args],
+    {
+      cwd: project,
+      env: { ...inherited(), ...plan.environment } as NodeJS.ProcessEnv,
+      stdio: ['ignore', 'pipe', 'pipe', 'ipc'],
+      detached: true,
+    },
+  );
+}
+
+/** Asks a process to end, waits, and after ten seconds insists. */
+export async function end(child: ChildProcess): Promise<void> {
+  if (child.exitCode !== null || child.signalCode !== null || child.pid === undefined) return;
+  const ended = new Promise<void>((resolve) => child.once('exit', () => resolve()));
+  child.kill('SIGTERM');
+  const insist = setTimeout(() => child.kill('SIGKILL'), STOP_MS);
+  await ended;
+  clearTimeout(insist);
 }
 
 /** What a process inherits: where programs and certificates are, never this machine's other secrets. */

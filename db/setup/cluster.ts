@@ -47,7 +47,11 @@ export async function ensureCluster(options: ClusterOptions): Promise<Cluster> {
   const secrets = ensureSecrets(folder);
   if (!exists) {
     say('Making a database cluster …');
-    makeCluster(data, binaries, roleStatements(secrets.databasePasswords, options.ownerMakesDatabases ?? false));
+    makeCluster(
+      data,
+      binaries,
+      roleStatements(secrets.databasePasswords, options.ownerMakesDatabases ?? false),
+    );
   }
   const server = new ServerProcess({ binaries, data, port, log: path.join(logs, 'postgres.log') });
   await server.start();

@@ -1,4 +1,10 @@
 // Loaded into every process that the supervisor starts: when the supervisor is gone, even killed, the process ends too.
-process.on('disconnect', () => process.kill(process.pid, 'SIGTERM'));
+const GRACE_MS = 5_000;
+
+process.on('disconnect', () => {
+  process.kill(process.pid, 'SIGTERM');
+  // Whoever is still busy tidying up by then has nobody left to tidy up for.
+  setTimeout(() => process.kill(process.pid, 'SIGKILL'), GRACE_MS).unref();
+});
 // The channel must not keep a process alive that has finished by itself.
 process.channel?.unref();

@@ -44,7 +44,9 @@ export function makeCluster(data: string, binaries: string, statements: readonly
   const singleUser = ['--single', '-D', attempt, 'postgres'];
   const said = runAsServer(path.join(binaries, 'postgres'), singleUser, `${statements.join('\n')}\n`);
   if (/\b(ERROR|FATAL|PANIC):/.test(said)) {
-    throw new Error(`The database roles could not be made:\n${said.replace(/PASSWORD '[^']*'/g, "PASSWORD '…'")}`);
+    throw new Error(
+      `The database roles could not be made:\n${said.replace(/PASSWORD '[^']*'/g, "PASSWORD '…'")}`,
+    );
   }
   renameSync(attempt, data);
 }

@@ -33,8 +33,12 @@ async function refuseUnknown(client: pg.Client): Promise<void> {
     `SELECT to_regclass('drizzle.__drizzle_migrations') IS NOT NULL AS there`,
   );
   if (!tables[0]?.there) return;
-  const known = new Set(readMigrationFiles({ migrationsFolder: MIGRATIONS }).map((migration) => migration.hash));
-  const { rows } = await client.query<{ hash: string }>('SELECT hash FROM drizzle.__drizzle_migrations ORDER BY id');
+  const known = new Set(
+    readMigrationFiles({ migrationsFolder: MIGRATIONS }).map((migration) => migration.hash),
+  );
+  const { rows } = await client.query<{ hash: string }>(
+    'SELECT hash FROM drizzle.__drizzle_migrations ORDER BY id',
+  );
   const unknown = rows.findIndex((row) => !known.has(row.hash));
   if (unknown === -1) return;
   throw new Error(

@@ -17,7 +17,8 @@ export async function refuseBusyPorts(ports: Readonly<Record<string, number>>): 
   const named = Object.entries(ports);
   for (const [variable, port] of named) {
     const other = named.find(([name, value]) => value === port && name !== variable);
-    if (other) throw new Error(`${variable} and ${other[0]} are both ${port}. Choose another port for one of them.`);
+    if (other)
+      throw new Error(`${variable} and ${other[0]} are both ${port}. Choose another port for one of them.`);
   }
   const busy: [string, number][] = [];
   for (const [variable, port] of named) if (await isBusy(port)) busy.push([variable, port]);
@@ -41,7 +42,12 @@ export function waitForAnswer(url: string, seconds: number, signal: AbortSignal)
 }
 
 /** Polls until somebody listens on a loopback port. @throws Error after `seconds`, or `signal`'s reason. */
-export function waitForListener(port: number, what: string, seconds: number, signal: AbortSignal): Promise<void> {
+export function waitForListener(
+  port: number,
+  what: string,
+  seconds: number,
+  signal: AbortSignal,
+): Promise<void> {
   return poll(() => isListening(port), `${what} does not listen on port ${port}`, seconds, signal);
 }
 
@@ -55,7 +61,8 @@ async function poll(
   for (;;) {
     signal.throwIfAborted();
     if (await ready().catch(() => false)) return;
-    if (Date.now() > deadline) throw new Error(`${complaint} after ${seconds} s. See the logs in the data folder.`);
+    if (Date.now() > deadline)
+      throw new Error(`${complaint} after ${seconds} s. See the logs in the data folder.`);
     await new Promise((resolve) => setTimeout(resolve, 100));
   }
 }

@@ -7,7 +7,9 @@ import { isRoot } from './postgres-binaries';
  * @returns what it printed.   @throws Error with what it printed, when it fails.
  */
 export function runAsServer(program: string, args: readonly string[], input?: string): string {
-  const [command, ...rest] = isRoot() ? ['runuser', '-u', 'postgres', '--', program, ...args] : [program, ...args];
+  const [command, ...rest] = isRoot()
+    ? ['runuser', '-u', 'postgres', '--', program, ...args]
+    : [program, ...args];
   const ran = spawnSync(command ?? program, rest, { input, cwd: '/', encoding: 'utf8', env: environment() });
   const said = `${ran.stdout ?? ''}${ran.stderr ?? ''}${ran.error?.message ?? ''}`;
   if (ran.status !== 0) throw new Error(`${path.basename(program)} failed:\n${said}`);
@@ -26,11 +28,16 @@ export function spawnServer(program: string, args: readonly string[], log: numbe
     cwd: '/',
     detached: true,
     stdio: ['ignore', log, log],
-    env: environment() as NodeJS.ProcessEnv,
+    env: environment(),
   });
 }
 
 /** Messages in English, whatever the machine's language, because a few of them are looked for. Nothing else is handed on. */
-function environment(): Record<string, string> {
-  return { PATH: process.env.PATH ?? '/usr/bin:/bin', LC_ALL: 'C.UTF-8', TZ: 'UTC' };
+function environment(): NodeJS.ProcessEnv {
+  return {
+    NODE_ENV: process.env.NODE_ENV,
+    PATH: process.env.PATH ?? '/usr/bin:/bin',
+    LC_ALL: 'C.UTF-8',
+    TZ: 'UTC',
+  };
 }

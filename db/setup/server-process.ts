@@ -17,7 +17,12 @@ export class ServerProcess {
   onLost: () => void = () => undefined;
 
   constructor(
-    private readonly at: { readonly binaries: string; readonly data: string; readonly port: number; readonly log: string },
+    private readonly at: {
+      readonly binaries: string;
+      readonly data: string;
+      readonly port: number;
+      readonly log: string;
+    },
   ) {}
 
   /** Process id of the server's first process, while it runs as this process's child. */

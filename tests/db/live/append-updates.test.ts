@@ -27,21 +27,31 @@ interface Row extends Record<string, unknown> {
 async function append(
   db: Database,
   entryId: string,
-  given: Partial<{ actor: Actor; lock: number; epoch: number; batch: string; client: number; payloads: Buffer[] }> = {},
+  given: Partial<{
+    actor: Actor;
+    lock: number;
+    epoch: number;
+    batch: string;
+    client: number;
+    payloads: Buffer[];
+  }> = {},
 ): Promise<Row[]> {
   const actor = given.actor ?? author;
   const payloads = given.payloads ?? [Buffer.from([1, 2, 3])];
   const clients = payloads.map(() => given.client ?? 7);
-  const { rows } = await db.$client.query<Row>('SELECT * FROM append_updates($1, $2, $3, $4, $5, $6, $7, $8)', [
-    entryId,
-    given.lock ?? 0,
-    given.epoch ?? 1,
-    actor.personId,
-    actor.loginId,
-    given.batch ?? randomUUID(),
-    clients,
-    payloads,
-  ]);
+  const { rows } = await db.$client.query<Row>(
+    'SELECT * FROM append_updates($1, $2, $3, $4, $5, $6, $7, $8)',
+    [
+      entryId,
+      given.lock ?? 0,
+      given.epoch ?? 1,
+      actor.personId,
+      actor.loginId,
+      given.batch ?? randomUUID(),
+      clients,
+      payloads,
+    ],
+  );
   return rows;
 }
 
@@ -52,11 +62,10 @@ async function newEntry(client = 7): Promise<string> {
 }
 
 async function register(entryId: string, client: number, actor: Actor): Promise<string> {
-  const { rows } = await database.ws.$client.query<{ answer: string }>('SELECT register_client($1, 1, $2, $3) AS answer', [
-    entryId,
-    client,
-    actor.personId,
-  ]);
+  const { rows } = await database.ws.$client.query<{ answer: string }>(
+    'SELECT register_client($1, 1, $2, $3) AS answer',
+    [entryId, client, actor.personId],
+  );
   return rows[0]?.answer ?? '';
 }
 
@@ -64,7 +73,9 @@ describe('append_updates, the one write path of an entry', () => {
   test('numbers without gaps and chains, also when many write at once', async () => {
     const entryId = await newEntry();
     await Promise.all(
-      Array.from({ length: 20 }, (_, i) => append(database.ws, entryId, { payloads: [Buffer.from([i]), Buffer.from([i, i])] })),
+      Array.from({ length: 20 }, (_, i) =>
+        append(database.ws, entryId, { payloads: [Buffer.from([i]), Buffer.from([i, i])] }),
+      ),
     );
     const { rows } = await database.app.execute<{
       seq: number;
@@ -98,8 +109,14 @@ describe('append_updates, the one write path of an entry', () => {
   test('the same batch twice enters once and answers the same', async () => {
     const entryId = await newEntry();
     const batch = randomUUID();
-    const first = await append(database.ws, entryId, { batch, payloads: [Buffer.from([1]), Buffer.from([2])] });
-    const second = await append(database.ws, entryId, { batch, payloads: [Buffer.from([1]), Buffer.from([2])] });
+    const first = await append(database.ws, entryId, {
+      batch,
+      payloads: [Buffer.from([1]), Buffer.from([2])],
+    });
+    const second = await append(database.ws, entryId, {
+      batch,
+      payloads: [Buffer.from([1]), Buffer.from([2])],
+    });
     expect(second).toEqual(first);
     expect(first.map((row) => row.seq)).toEqual([1, 2]);
   });

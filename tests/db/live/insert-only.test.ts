@@ -24,7 +24,9 @@ beforeAll(async () => {
   ]);
   await app.execute(sql`INSERT INTO reading (attachment_id, hash, spec, summary, person_id)
     VALUES (${attachmentId}, 'h', '{}', '{}', ${author.personId})`);
-  await app.execute(sql`INSERT INTO result (address, engine, outcome, milliseconds) VALUES ('a', 'e', '{}', 1)`);
+  await app.execute(
+    sql`INSERT INTO result (address, engine, outcome, milliseconds) VALUES ('a', 'e', '{}', 1)`,
+  );
 });
 afterAll(() => database.drop());
 
@@ -32,7 +34,9 @@ const RECORD_TABLES = ['entry_update', 'attachment', 'reading', 'result', 'audit
 
 /** The whole table as text, to show that nothing changed. */
 async function content(table: string): Promise<string> {
-  const { rows } = await database.owner.execute(sql.raw(`SELECT md5(string_agg(t::text, '|' ORDER BY t::text)) AS h, count(*) FROM ${table} t`));
+  const { rows } = await database.owner.execute(
+    sql.raw(`SELECT md5(string_agg(t::text, '|' ORDER BY t::text)) AS h, count(*) FROM ${table} t`),
+  );
   return JSON.stringify(rows);
 }
 
@@ -58,17 +62,23 @@ describe.each(RECORD_TABLES)('record table %s', (table) => {
   test.each(['app', 'ws', 'owner'] as const)('%s cannot change or remove a row by any verb', async (role) => {
     const before = await content(table);
     for (const verb of verbs) {
-      expect(await refusal(database[role], verb), `${role}: ${verb}`).toMatch(/permission denied|insert-only/);
+      expect(await refusal(database[role], verb), `${role}: ${verb}`).toMatch(
+        /permission denied|insert-only/,
+      );
     }
     expect(await content(table)).toBe(before);
   });
 
   test('its triggers hold for the owner in replica mode, and app and ws cannot disable them', async () => {
     for (const role of ['app', 'ws'] as const) {
-      expect(await refusal(database[role], `ALTER TABLE ${table} DISABLE TRIGGER insert_only`)).toMatch(/must be owner/);
+      expect(await refusal(database[role], `ALTER TABLE ${table} DISABLE TRIGGER insert_only`)).toMatch(
+        /must be owner/,
+      );
     }
     // Only a superuser may set replica mode at all, and even then ENABLE ALWAYS keeps the triggers firing.
-    expect(await refusal(database.owner, 'SET session_replication_role = replica')).toMatch(/permission denied/);
+    expect(await refusal(database.owner, 'SET session_replication_role = replica')).toMatch(
+      /permission denied/,
+    );
     const { rows } = await database.owner.execute<{ tgenabled: string }>(
       sql.raw(`SELECT tgenabled FROM pg_trigger WHERE tgrelid = '${table}'::regclass AND NOT tgisinternal`),
     );
@@ -95,7 +105,8 @@ test('the time of a record row is the database clock, whatever the writer says',
 
 describe('least rights', () => {
   test('ws holds SELECT and EXECUTE only, and never sees a password hash', async () => {
-    const { rows } = await database.owner.execute(sql`SELECT table_name, privilege_type FROM information_schema.table_privileges
+    const { rows } = await database.owner
+      .execute(sql`SELECT table_name, privilege_type FROM information_schema.table_privileges
       WHERE grantee IN ('motebook_ws', 'motebook_read') AND privilege_type <> 'SELECT'`);
     expect(rows).toEqual([]);
     expect(await refusal(database.ws, 'SELECT password_hash FROM person')).toMatch(/permission denied/);
@@ -103,14 +114,23 @@ describe('least rights', () => {
   });
 
   test('app cannot move the head of an entry, its epoch or its lock past the write path', async () => {
-    for (const column of ['head_seq = 9', "head_chain = ''", 'epoch = 2', 'lock = 3', "state = 'signed'", 'bytes = 0']) {
+    for (const column of [
+      'head_seq = 9',
+      "head_chain = ''",
+      'epoch = 2',
+      'lock = 3',
+      "state = 'signed'",
+      'bytes = 0',
+    ]) {
       expect(await refusal(database.app, `UPDATE entry SET ${column}`), column).toMatch(/permission denied/);
     }
   });
 
   test('app and ws cannot shift the clock or make tables', async () => {
     for (const role of ['app', 'ws'] as const) {
-      expect(await refusal(database[role], `INSERT INTO clock_offset (shift) VALUES ('1 day')`)).toMatch(/permission denied/);
+      expect(await refusal(database[role], `INSERT INTO clock_offset (shift) VALUES ('1 day')`)).toMatch(
+        /permission denied/,
+      );
       expect(await refusal(database[role], 'CREATE TABLE mine (a int)')).toMatch(/permission denied/);
     }
   });
