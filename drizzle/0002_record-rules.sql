@@ -56,6 +56,9 @@ DECLARE
   moment timestamptz;
   already boolean;
 BEGIN
+  IF p_clients IS NULL OR p_payloads IS NULL OR cardinality(p_clients) <> cardinality(p_payloads) THEN
+    RAISE EXCEPTION 'append_updates wants one client id for each payload';
+  END IF;
   SELECT * INTO head FROM entry WHERE id = p_entry FOR UPDATE;
   IF NOT FOUND THEN
     RETURN QUERY SELECT 'unknown', NULL::integer, NULL::bigint, NULL::bytea, NULL::timestamptz; RETURN;
@@ -77,6 +80,7 @@ BEGIN
   END IF;
   IF NOT EXISTS (
     SELECT 1 FROM person p JOIN notebook_member m ON m.person_id = p.id AND m.notebook_id = head.notebook_id
+      JOIN notebook n ON n.id = m.notebook_id AND n.archived_at IS NULL
     WHERE p.id = p_person AND p.active AND p.role <> 'guest' AND m.role IN ('owner', 'editor'))
   OR (p_login IS NOT NULL AND NOT EXISTS (
     SELECT 1 FROM login l WHERE l.id = p_login AND l.person_id = p_person AND l.ended_at IS NULL)) THEN
@@ -182,6 +186,9 @@ REVOKE ALL ON SCHEMA public FROM PUBLIC;
 --> statement-breakpoint
 REVOKE EXECUTE ON ALL FUNCTIONS IN SCHEMA public FROM PUBLIC;
 --> statement-breakpoint
+-- Later migrations grant each function by name, too.
+ALTER DEFAULT PRIVILEGES REVOKE EXECUTE ON FUNCTIONS FROM PUBLIC;
+--> statement-breakpoint
 GRANT USAGE ON SCHEMA public TO motebook_app, motebook_ws, motebook_read, motebook_backup;
 --> statement-breakpoint
 GRANT SELECT ON ALL TABLES IN SCHEMA public TO motebook_app, motebook_backup;
@@ -205,7 +212,12 @@ GRANT EXECUTE ON FUNCTION register_client(uuid, integer, bigint, uuid) TO motebo
 --> statement-breakpoint
 GRANT EXECUTE ON FUNCTION save_snapshot(uuid, integer, bigint, bytea) TO motebook_app;
 --> statement-breakpoint
-GRANT INSERT, UPDATE ON lab, person, login, notebook, upload_ticket, entry_text TO motebook_app;
+GRANT INSERT, UPDATE ON lab, notebook, upload_ticket, entry_text TO motebook_app;
+--> statement-breakpoint
+-- A login name never changes, and a login never passes to another person (integrity rule R8).
+GRANT INSERT, UPDATE (email, name, role, admin, active, password_hash) ON person TO motebook_app;
+--> statement-breakpoint
+GRANT INSERT, UPDATE (seen_at, ended_at) ON login TO motebook_app;
 --> statement-breakpoint
 GRANT INSERT, UPDATE, DELETE ON notebook_member, block_result TO motebook_app;
 --> statement-breakpoint

@@ -10,7 +10,7 @@ import { LOGIN_IDLE_MINUTES, LOGIN_TOTAL_HOURS } from '../../session-cookie';
  * @param loginId - UUID; anything else finds nobody.
  */
 export async function findActor(db: Connection, loginId: string): Promise<Actor | null> {
-  if (!/^[0-9a-f-]{36}$/i.test(loginId)) return null;
+  if (!/^[0-9a-f]{8}(-[0-9a-f]{4}){3}-[0-9a-f]{12}$/i.test(loginId)) return null;
   const [row] = await db
     .select({
       personId: person.id,

@@ -1,0 +1,2 @@
+ALTER TABLE "person" ADD CONSTRAINT "person_login_form" CHECK ("person"."login" ~ '^[a-z][a-z0-9._-]{1,39}$');--> statement-breakpoint
+ALTER TABLE "person" ADD CONSTRAINT "person_email_form" CHECK ("person"."email" = lower("person"."email") AND "person"."email" ~ '^[^@ ]+@[^@ ]+$');
