@@ -1,6 +1,6 @@
 import path from 'node:path';
 import { parseArgs } from 'node:util';
-import { z } from 'zod';
+import type { z } from 'zod';
 import { connect } from '../db/client';
 import { addPerson } from '../db/commands/person/add-person';
 import { AppError } from '../db/errors';

@@ -3,7 +3,7 @@ import { existsSync, lstatSync, readdirSync, readFileSync, rmSync, writeFileSync
 import path from 'node:path';
 import { end, spawnNode } from './children';
 
-/** What a build is made of; anything else (tests, set-up, papers) does not ask for a new one. */
+/** What a build is made of; anything else (tests, papers) does not ask for a new one. */
 const SOURCES = [
   'app',
   'components',
@@ -18,7 +18,6 @@ const SOURCES = [
   'tsconfig.json',
   'package-lock.json',
 ];
-const LEFT_OUT = new Set([path.join('db', 'setup')]);
 
 /**
  * Builds the pages when their sources have changed since the last build.
@@ -29,7 +28,7 @@ export async function ensureBuild(
   say: (line: string) => void,
   signal: AbortSignal,
 ): Promise<void> {
-  const wanted = hashOf(project, SOURCES, LEFT_OUT);
+  const wanted = hashOf(project, SOURCES);
   const stamp = path.join(project, '.next', 'motebook-sources');
   if (existsSync(stamp) && readFileSync(stamp, 'utf8') === wanted) return;
   say('Building the pages (a minute or two; only when the sources have changed) …');
@@ -55,12 +54,12 @@ export async function ensureBuild(
   writeFileSync(stamp, wanted);
 }
 
-/** SHA-256 over names and contents of files and folders, in a fixed order. Names in `leftOut` and links are passed over. */
-export function hashOf(project: string, names: readonly string[], leftOut: ReadonlySet<string>): string {
+/** SHA-256 over names and contents of files and folders, in a fixed order. Links are passed over. */
+export function hashOf(project: string, names: readonly string[]): string {
   const hash = createHash('sha256');
   const visit = (name: string) => {
     const full = path.join(project, name);
-    if (leftOut.has(name) || !existsSync(full)) return;
+    if (!existsSync(full)) return;
     const stat = lstatSync(full);
     if (stat.isDirectory()) {
       for (const entry of readdirSync(full).sort()) visit(path.join(name, entry));
