@@ -98,14 +98,15 @@ function once<T>(read: () => T): () => T {
   return () => (cached ??= { value: read() }).value;
 }
 
-/** In production the cookie must never travel in the open. */
+/** In production the cookie must never travel in the open; a demo, whose passwords are printed, stays on its machine. */
 function checkPublicUrl(mode: string, address: string): void {
   const { protocol, hostname } = new URL(address);
-  if (mode === 'production' && protocol !== 'https:' && !isLoopback(hostname)) {
-    throw new Error(
-      'The environment is not right (see .env.example):\n  NEXTAUTH_URL must be https outside loopback',
-    );
-  }
+  if (isLoopback(hostname)) return;
+  const fault =
+    mode === 'demo'
+      ? 'must be on loopback in demo mode; for others, set MOTEBOOK_MODE=production'
+      : protocol !== 'https:' && 'must be https outside loopback';
+  if (fault) throw new Error(`The environment is not right (see .env.example):\n  NEXTAUTH_URL ${fault}`);
 }
 
 /** Environment of the web process. @throws Error listing every fault. */

@@ -64,6 +64,6 @@ const rules: { [A in Action]: (actor: Actor, thing: ActionThings[A]) => boolean 
 /** Whether `actor` may do `action` to `thing`. Nobody who is deactivated, or unknown, may do anything. */
 export function may<A extends Action>(actor: Actor | null, action: A, thing: ActionThings[A]): boolean {
   if (actor === null || !actor.active) return false;
-  const rule = rules[action];
-  return rule !== undefined && rule(actor, thing);
+  // An own property: a name such as "constructor" must not find what every object inherits.
+  return Object.hasOwn(rules, action) && rules[action](actor, thing);
 }

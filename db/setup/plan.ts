@@ -12,6 +12,9 @@ export function addresses(settings: Settings) {
   };
 }
 
+/** Next reads .env by itself; what is set, even to nothing, it leaves alone. The web process needs none of these. */
+const WITHHELD = { MOTEBOOK_DATABASE_OWNER: '', MOTEBOOK_DATABASE_WS: '' };
+
 /** The processes of a demo installation, each with the environment that it needs and no more. */
 export function demoPlan(settings: Settings, cluster: Cluster, folder: string, dev: boolean): ChildPlan[] {
   const at = addresses(settings);
@@ -82,6 +85,7 @@ export function demoPlan(settings: Settings, cluster: Cluster, folder: string, d
         ...signIn,
         ...fileService,
         ...cache,
+        ...WITHHELD,
         NODE_ENV: dev ? 'development' : 'production',
         MOTEBOOK_WS_URL: at.ws,
         MOTEBOOK_FILES_ORIGIN: at.files,
@@ -127,7 +131,7 @@ export function productionPlan(settings: Settings): ChildPlan[] {
         '-p',
         String(settings.MOTEBOOK_PORT),
       ],
-      environment: { ...withoutWs, ...production },
+      environment: { ...withoutWs, ...WITHHELD, ...production },
     },
   ];
 }

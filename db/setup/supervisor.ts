@@ -39,12 +39,18 @@ export class Supervisor {
     for (const signal of ['SIGINT', 'SIGTERM', 'SIGHUP'] as const)
       process.on(signal, () => this.ending.abort(ASKED));
     process.on('disconnect', () => this.ending.abort(ASKED));
+    // start.mjs may be gone before the line above was reached; undefined when there never was a channel.
+    if (process.connected === false) this.ending.abort(ASKED);
     try {
-      await bringUp(this);
+      this.signal.throwIfAborted();
+      const up = bringUp(this);
+      // Whoever asks to end does not wait for what is still being brought up; that fails as its ground goes.
+      await Promise.race([up, ended]);
       await ended;
     } catch (error) {
       if (this.signal.reason !== ASKED) throw error;
     } finally {
+      if (this.signal.aborted) this.say('Stopping …');
       await this.children.stop();
       await this.cluster?.stop();
       removeRunNote(this.folder);
