@@ -1,7 +1,7 @@
 'use client';
 
 import { useRouter } from 'next/navigation';
-import { useState, useTransition, type FormEvent } from 'react';
+import { useRef, useState, useTransition, type FormEvent } from 'react';
 import { Button } from '@/components/ui/button';
 import { controlClasses, classes } from '@/components/ui/classes';
 import { Dialog } from '@/components/ui/dialog';
@@ -30,6 +30,7 @@ export function CreateNotebook({ create, startOpen }: { create: CreateAction; st
   const [fields, setFields] = useState<Readonly<Record<string, string>>>({});
   const [fault, setFault] = useState<string | null>(null);
   const [pending, startTransition] = useTransition();
+  const form = useRef<HTMLFormElement>(null);
   const set = (change: Partial<NewNotebook>) => setTyped((before) => ({ ...before, ...change }));
 
   function submit(event: FormEvent): void {
@@ -39,6 +40,7 @@ export function CreateNotebook({ create, startOpen }: { create: CreateAction; st
         const outcome = await create(typed);
         if (outcome.ok) return router.push(`/notebooks/${outcome.value.notebookId}`);
         setFields(outcome.refusal.fields);
+        requestAnimationFrame(() => form.current?.querySelector<HTMLElement>('[aria-invalid]')?.focus());
         setFault(Object.keys(outcome.refusal.fields).length > 0 ? null : outcome.refusal.sentence);
       } catch (error) {
         console.warn('the notebook could not be made', error);
@@ -58,7 +60,7 @@ export function CreateNotebook({ create, startOpen }: { create: CreateAction; st
         title="A new notebook"
         description="You will own it. People are added to it by its owners."
       >
-        <form noValidate onSubmit={submit} className="space-y-5">
+        <form ref={form} noValidate onSubmit={submit} className="space-y-5">
           {fault ? <Notice kind="error">{fault}</Notice> : null}
           <Field
             label="Code"

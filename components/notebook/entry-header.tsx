@@ -35,7 +35,7 @@ export function EntryHeader({
   const saveTitle = useCallback((title: string) => rename({ entryId: id, title }), [rename, id]);
   const saveDate = useCallback((day: string) => setDate({ entryId: id, experimentDate: day }), [setDate, id]);
   return (
-    <header className="border-b pb-5">
+    <header className="border-b pb-5 wide:pr-margin">
       <p className="label mb-2 flex flex-wrap gap-x-3 text-muted">
         <span className="font-semibold text-ink">
           <EntryNumber code={entry.notebookCode} number={entry.number} />

@@ -36,7 +36,7 @@ const cell = 'tab:py-3 tab:pr-4 tab:align-baseline';
  */
 export function Ledger({ lines, label }: { lines: readonly LedgerLine[]; label: string }) {
   return (
-    <table role="table" aria-label={label} className="block w-full border-b tab:table">
+    <table role="table" aria-label={label} className="block w-full border-b tab:table tab:table-fixed">
       <thead role="rowgroup" className="hidden tab:table-header-group">
         <tr role="row" className="border-b">
           <th role="columnheader" scope="col" className={`${head} w-20`}>
@@ -69,12 +69,12 @@ function LedgerRow({ line }: { line: LedgerLine }) {
   return (
     <tr
       role="row"
-      className="group relative block border-b py-3 last:border-b-0 hover:bg-page tab:table-row tab:py-0"
+      className="group relative grid grid-cols-[auto_auto_1fr] gap-x-3 border-b py-3 last:border-b-0 hover:bg-page tab:table-row tab:py-0"
     >
-      <td role="cell" className={`label whitespace-nowrap text-muted max-tab:mr-3 max-tab:inline ${cell}`}>
+      <td role="cell" className={`label whitespace-nowrap text-muted ${cell}`}>
         <EntryNumber code={line.notebookCode} number={line.number} />
       </td>
-      <td role="cell" className={`block tab:table-cell ${cell}`}>
+      <td role="cell" className={`max-tab:order-1 max-tab:col-span-3 max-tab:mt-0.5 ${cell}`}>
         <Link
           href={`/entries/${line.id}`}
           className="leading-snug text-ink decoration-1 underline-offset-4 group-hover:underline after:absolute after:inset-0"
@@ -83,13 +83,13 @@ function LedgerRow({ line }: { line: LedgerLine }) {
         </Link>
         <span className="label mt-0.5 block text-muted">{line.people.join(', ')}</span>
       </td>
-      <td role="cell" className={`label whitespace-nowrap max-tab:mr-3 max-tab:inline ${cell}`}>
+      <td role="cell" className={`label whitespace-nowrap max-tab:text-muted ${cell}`}>
         <time dateTime={line.experimentDate}>{formatDay(line.experimentDate, 'short')}</time>
       </td>
-      <td role="cell" className={`label text-muted max-tab:inline ${cell}`}>
+      <td role="cell" className={`label text-muted ${cell}`}>
         {stateWords[line.state]}
       </td>
-      <td role="cell" className={`label block tab:table-cell ${cell} tab:pr-0`}>
+      <td role="cell" className={`label max-tab:order-2 max-tab:col-span-3 max-tab:mt-1 ${cell} tab:pr-0`}>
         <Results line={line} />
       </td>
     </tr>
@@ -102,7 +102,7 @@ function Results({ line }: { line: LedgerLine }) {
     <ul className="space-y-0.5">
       {line.results.map(({ blockId, verdict, d, lo, hi }) => (
         <li key={blockId} className="flex items-baseline gap-x-3 max-tab:flex-wrap">
-          <span className="tab:w-52">
+          <span className="tab:w-48 tab:shrink-0">
             {d === null ? (
               <span className="text-muted">no single value</span>
             ) : (

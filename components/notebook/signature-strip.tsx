@@ -14,7 +14,7 @@ export function SignatureStrip({
   timeZone: string;
 }) {
   return (
-    <footer className="label grid gap-x-8 gap-y-1 border-t-2 border-ink/70 pt-3 text-muted tab:grid-cols-[auto_1fr]">
+    <footer className="label mt-auto grid gap-x-8 gap-y-1 border-t-2 border-ink/70 pt-3 text-muted tab:grid-cols-[auto_1fr]">
       <p className="font-semibold text-ink first-letter:uppercase">{stateWords[state]}</p>
       <p className="tab:text-right">
         Begun by {startedBy} on {startedAt} ({timeZone.replaceAll('_', ' ')}).

@@ -22,7 +22,16 @@ export type StartAction = (input: {
 }) => Promise<{ ok: true; value: { entryId: string } } | { ok: false; refusal: Refusal }>;
 
 /** Today's entry in one click, in the notebook used last; the other notebooks stand under it. */
-export function StartEntry({ places, start }: { places: readonly StartPlace[]; start: StartAction }) {
+export function StartEntry({
+  places,
+  start,
+  named = true,
+}: {
+  places: readonly StartPlace[];
+  start: StartAction;
+  /** Whether to say which notebook it is; not where the page says so. */
+  named?: boolean;
+}) {
   const router = useRouter();
   const [pending, startTransition] = useTransition();
   const [chosen, setChosen] = useState<string | null>(null);
@@ -58,21 +67,21 @@ export function StartEntry({ places, start }: { places: readonly StartPlace[]; s
           </Button>
         )}
         <span className="small text-muted">
-          {first.todays ? (
-            <EntryNumber code={first.code} number={first.todays.number} />
-          ) : (
+          {first.todays ? <EntryNumber code={first.code} number={first.todays.number} /> : null}
+          {named ? (
             <>
-              in <span className="text-ink">{first.code}</span>
+              {first.todays ? ', ' : 'in '}
+              {first.todays ? null : <span className="text-ink">{first.code}, </span>}
+              {first.title}
             </>
-          )}
-          , {first.title}
+          ) : null}
         </span>
       </div>
       {fault ? <Notice kind="error">{fault}</Notice> : null}
       {others.length > 0 ? (
-        <div className="small text-muted">
+        <div className="small flex flex-wrap items-baseline gap-x-2 text-muted">
           <span>or in</span>
-          <ul className="mt-1">
+          <ul className="flex flex-wrap gap-x-6">
             {others.map((place) => (
               <li key={place.id}>
                 {place.todays ? (

@@ -46,6 +46,7 @@ export default async function NotebookPage({ params, searchParams }: Props) {
           <StartEntry
             places={[notebook].map(({ id, code, title, todays }) => ({ id, code, title, todays }))}
             start={startEntryAction}
+            named={false}
           />
         ) : null}
       </div>
