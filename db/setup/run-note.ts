@@ -1,6 +1,7 @@
 import { existsSync, readFileSync, readlinkSync, renameSync, rmSync, writeFileSync } from 'node:fs';
 import path from 'node:path';
 import { setTimeout as pause } from 'node:timers/promises';
+import { sendSignal } from './send-signal';
 
 /** What a running installation leaves beside its data, so that a later start finds it, or what it left behind. */
 export interface RunNote {
@@ -48,7 +49,7 @@ export function refuseSecondStart(folder: string, project: string): void {
 export async function endRunning(folder: string, project: string): Promise<boolean> {
   const note = findRunNote(folder);
   if (!note || !isOurs(note.supervisor, project)) return false;
-  process.kill(note.supervisor, 'SIGTERM');
+  sendSignal(note.supervisor, 'SIGTERM');
   const deadline = Date.now() + 60_000;
   while (isOurs(note.supervisor, project)) {
     if (Date.now() > deadline)
@@ -63,14 +64,7 @@ export async function endOrphans(folder: string, project: string): Promise<void>
   const note = findRunNote(folder);
   if (!note) return;
   const orphans = Object.values(note.children).filter((pid) => pid > 0 && isOurs(pid, project));
-  for (const pid of orphans) {
-    try {
-      process.kill(pid, 'SIGKILL');
-    } catch (error) {
-      // Gone by itself in between.
-      if ((error as NodeJS.ErrnoException).code !== 'ESRCH') throw error;
-    }
-  }
+  for (const pid of orphans) sendSignal(pid, 'SIGKILL');
   while (orphans.some((pid) => isOurs(pid, project))) await pause(50);
   removeRunNote(folder);
 }

@@ -3,7 +3,8 @@ import { closeSync, readFileSync } from 'node:fs';
 import path from 'node:path';
 import { setTimeout as pause } from 'node:timers/promises';
 import { lastLines, openLog } from './log-file';
-import { runAsServer, spawnServer } from './run-as-server';
+import { spawnServer } from './run-as-server';
+import { sendSignal } from './send-signal';
 
 /** Long enough for the recovery after a crash; only the point at which waiting makes no sense any more. */
 const START_SECONDS = 300;
@@ -33,7 +34,7 @@ export class ServerProcess {
   /** Starts the server and waits until it takes connections. @throws Error with the last lines of its log. */
   async start(): Promise<void> {
     if (this.child) return;
-    this.endStray();
+    await this.endStray();
     for (let tries = 1; ; tries++) {
       const fault = await this.attempt();
       if (fault === null) return;
@@ -91,12 +92,17 @@ export class ServerProcess {
   }
 
   /** Ends a server that runs on these data without belonging to this process (its start was killed a moment ago). */
-  private endStray(): void {
+  private async endStray(): Promise<void> {
     const pid = Number(this.lockFile()[0]);
-    if (!Number.isInteger(pid) || pid <= 0 || !servesData(pid, this.at.data)) return;
-    runAsServer(path.join(this.at.binaries, 'pg_ctl'), [
-      ...['-D', this.at.data, '-w', '-t', String(STOP_SECONDS), '-m', 'fast', 'stop'],
-    ]);
+    if (!Number.isInteger(pid) || pid <= 0) return;
+    const deadline = Date.now() + STOP_SECONDS * 1000;
+    while (servesData(pid, this.at.data)) {
+      if (Date.now() > deadline)
+        throw new Error(`PostgreSQL (process ${pid}) runs on ${this.at.data} and does not stop.`);
+      // Repeating it does no harm: the server is on its way down already.
+      sendSignal(pid, 'SIGINT');
+      await pause(50);
+    }
   }
 
   private lockFile(): string[] {

@@ -1,11 +1,12 @@
 import { randomUUID } from 'node:crypto';
 import { sql } from 'drizzle-orm';
+import pg from 'pg';
 import { afterAll, beforeAll, describe, expect, test } from 'vitest';
 import type { Database } from '../../../db/client';
 import { CHAIN_START, nextChain } from '../../../db/integrity/chain';
 import type { Actor } from '../../../db/policies/may';
 import { createTestDatabase, type TestDatabase } from '../../helpers/database';
-import { makeEntry, makeMember, makeNotebook, makePerson } from '../../helpers/factories';
+import { makeEntry, makeLogin, makeMember, makeNotebook, makePerson } from '../../helpers/factories';
 
 let database: TestDatabase;
 let author: Actor;
@@ -152,6 +153,60 @@ describe('append_updates, the one write path of an entry', () => {
     expect((await append(database.ws, other, { actor: editor, client: 9 }))[0]?.refusal).toBeNull();
     await database.app.execute(sql`UPDATE person SET active = false WHERE id = ${editor.personId}`);
     expect((await append(database.ws, other, { actor: editor, client: 9 }))[0]?.refusal).toBe('forbidden');
+  });
+
+  test('refuses while the notebook is archived', async () => {
+    const archived = await makeNotebook(database.app, author);
+    const entryId = await makeEntry(database.app, archived.id, author);
+    await register(entryId, 7, author);
+    expect((await append(database.ws, entryId))[0]?.refusal).toBeNull();
+    await database.app.execute(
+      sql`UPDATE notebook SET archived_at = motebook_now() WHERE id = ${archived.id}`,
+    );
+    expect((await append(database.ws, entryId))[0]?.refusal).toBe('forbidden');
+    await database.app.execute(sql`UPDATE notebook SET archived_at = NULL WHERE id = ${archived.id}`);
+    expect((await append(database.ws, entryId))[0]?.refusal).toBeNull();
+  });
+
+  test('a login that has ended writes nothing more', async () => {
+    const entryId = await newEntry();
+    const login = await makeLogin(database.app, author.personId);
+    const actor = { ...author, loginId: login };
+    expect((await append(database.ws, entryId, { actor }))[0]?.refusal).toBeNull();
+    await database.app.execute(sql`UPDATE login SET ended_at = motebook_now() WHERE id = ${login}`);
+    expect((await append(database.ws, entryId, { actor }))[0]?.refusal).toBe('forbidden');
+  });
+
+  test('a caller that mixes up its lists is told so and stores nothing', async () => {
+    const entryId = await newEntry();
+    const call = (clients: number[] | null, payloads: Buffer[] | null) =>
+      database.ws.$client.query('SELECT * FROM append_updates($1, 0, 1, $2, $3, $4, $5, $6)', [
+        ...[entryId, author.personId, author.loginId, randomUUID(), clients, payloads],
+      ]);
+    await expect(call([7, 7], [Buffer.from([1])])).rejects.toThrow(/one client id for each payload/);
+    await expect(call(null, [Buffer.from([1])])).rejects.toThrow(/one client id for each payload/);
+    await expect(call([7], null)).rejects.toThrow(/one client id for each payload/);
+    expect((await call([], [])).rows).toEqual([]);
+    const { rows } = await database.app.execute(sql`SELECT 1 FROM entry_update WHERE entry_id = ${entryId}`);
+    expect(rows).toHaveLength(0);
+  });
+
+  test('each batch is announced once, with entry and head', async () => {
+    const entryId = await newEntry();
+    const client = new pg.Client({ connectionString: database.urls.motebook_ws });
+    const heard: string[] = [];
+    client.on('notification', (notice) => heard.push(notice.payload ?? ''));
+    await client.connect();
+    try {
+      await client.query('LISTEN motebook_update');
+      await append(database.ws, entryId, { payloads: [Buffer.from([1]), Buffer.from([2])] });
+      await append(database.ws, entryId, { lock: 5 });
+      // A query's answer comes after the notices that were committed before it.
+      await client.query('SELECT 1');
+      expect(heard.map((text) => JSON.parse(text) as unknown)).toEqual([{ entry: entryId, seq: 2 }]);
+    } finally {
+      await client.end();
+    }
   });
 
   test('a client id belongs to the account that claimed it first', async () => {
