@@ -14,7 +14,7 @@ export default async function MainLayout({ children }: { children: ReactNode }) 
     <>
       <a
         href="#content"
-        className="small fixed top-2 left-2 z-50 -translate-y-16 rounded-sm bg-malachite px-4 py-2 text-on-malachite focus:translate-y-0"
+        className="small fixed top-2 inline-flex min-h-11 items-center left-2 z-50 -translate-y-16 rounded-sm bg-malachite px-4 text-on-malachite focus:translate-y-0"
       >
         Skip to the page
       </a>

@@ -36,19 +36,19 @@ export function EntryHeader({
   const saveDate = useCallback((day: string) => setDate({ entryId: id, experimentDate: day }), [setDate, id]);
   return (
     <header className="border-b pb-5 wide:pr-margin">
-      <p className="label mb-2 flex flex-wrap gap-x-3 text-muted">
+      <p className="label mb-2 flex flex-wrap items-center gap-x-3 text-muted max-desk:mb-0">
         <span className="font-semibold text-ink">
           <EntryNumber code={entry.notebookCode} number={entry.number} />
         </span>
         <Link
           href={`/notebooks/${entry.notebookId}`}
-          className="underline-offset-4 hover:text-ink hover:underline"
+          className="inline-flex items-center underline-offset-4 hover:text-ink hover:underline max-desk:min-h-11"
         >
           {entry.notebookTitle}
         </Link>
       </p>
       <EntryTitle title={entry.title} editable={entry.editable} save={saveTitle} />
-      <p className="small mt-2 flex flex-wrap gap-x-4 text-muted">
+      <p className="small mt-2 flex flex-wrap items-center gap-x-4 text-muted max-desk:mt-0">
         <EntryDate day={entry.experimentDate} editable={entry.editable} save={saveDate} />
         <span>{inWords(entry.people)}</span>
       </p>

@@ -64,7 +64,7 @@ export function EntryTitle({
           event.preventDefault();
           keep(value);
         }}
-        className="-mx-2 block w-[calc(100%+1rem)] resize-none overflow-hidden rounded-sm bg-transparent px-2 py-0.5 text-title font-bold field-sizing-content hover:bg-paper focus:bg-paper focus-visible:outline-offset-0"
+        className="-mx-2 block min-h-11 w-[calc(100%+1rem)] resize-none overflow-hidden rounded-sm bg-transparent px-2 py-0.5 text-title font-bold field-sizing-content hover:bg-paper focus:bg-paper focus-visible:outline-offset-0"
       />
       <p id="title-state" role="status" className={state.is === 'failed' ? 'label text-madder' : 'sr-only'}>
         {state.is === 'saving' ? 'The title is being saved.' : null}

@@ -47,7 +47,6 @@ export function PersonMenu({
         trigger={
           <button
             type="button"
-            aria-label={`${name}, your account`}
             className="flex min-h-11 min-w-11 items-center justify-center gap-2.5 px-3 text-left max-tab:px-4 desk:w-full desk:justify-start"
           >
             <span
@@ -56,7 +55,8 @@ export function PersonMenu({
             >
               {initials}
             </span>
-            <span className="label line-clamp-2 text-muted max-desk:hidden">{name}</span>
+            <span className="label line-clamp-2 text-muted max-desk:sr-only">{name}</span>
+            <span className="sr-only">, your account</span>
           </button>
         }
       >
