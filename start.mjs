@@ -4,4 +4,4 @@ import { checkNode } from './scripts/check-node.mjs';
 
 checkNode();
 // Only now: what follows is written for the Node that was just asked for.
-import('./scripts/launch.mjs');
+import('./scripts/launch.mjs').then(({ launch }) => launch('db/setup/start.ts'));

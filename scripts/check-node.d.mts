@@ -1,0 +1,2 @@
+export function findNodeFault(version: string): string | null;
+export function checkNode(): void;

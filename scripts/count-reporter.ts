@@ -1,0 +1,34 @@
+import { writeFileSync } from 'node:fs';
+import type { Reporter, TestModule } from 'vitest/node';
+
+export interface Counts {
+  passed: number;
+  failed: number;
+  skipped: number;
+  /** One line for each skipped test: its name and why. */
+  skips: string[];
+}
+
+/** Counts tests for the sum over all runners; writes them as JSON to the file named by MOTEBOOK_TEST_COUNTS. */
+export default class CountReporter implements Reporter {
+  onTestRunEnd(modules: readonly TestModule[], unhandled: readonly unknown[]): void {
+    const counts: Counts = { passed: 0, failed: unhandled.length, skipped: 0, skips: [] };
+    for (const module of modules) {
+      // A file that does not load, or a preparation that fails, hides its tests: it counts as a failure of its own.
+      counts.failed += module.errors().length;
+      for (const suite of module.children.allSuites()) counts.failed += suite.errors().length;
+      for (const test of module.children.allTests()) {
+        const result = test.result();
+        if (result.state === 'passed') counts.passed += 1;
+        else if (result.state === 'failed') counts.failed += 1;
+        else {
+          counts.skipped += 1;
+          const why = result.state === 'skipped' ? result.note : 'it never ran';
+          counts.skips.push(`${module.relativeModuleId}: ${test.fullName}${why ? ` (${why})` : ''}`);
+        }
+      }
+    }
+    const file = process.env.MOTEBOOK_TEST_COUNTS;
+    if (file) writeFileSync(file, JSON.stringify(counts));
+  }
+}
