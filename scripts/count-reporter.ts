@@ -13,22 +13,22 @@ export interface Counts {
 export default class CountReporter implements Reporter {
   onTestRunEnd(modules: readonly TestModule[], unhandled: readonly unknown[]): void {
     const counts: Counts = { passed: 0, failed: unhandled.length, skipped: 0, skips: [] };
-    for (const module of modules) {
+    for (const file of modules) {
       // A file that does not load, or a preparation that fails, hides its tests: it counts as a failure of its own.
-      counts.failed += module.errors().length;
-      for (const suite of module.children.allSuites()) counts.failed += suite.errors().length;
-      for (const test of module.children.allTests()) {
+      counts.failed += file.errors().length;
+      for (const suite of file.children.allSuites()) counts.failed += suite.errors().length;
+      for (const test of file.children.allTests()) {
         const result = test.result();
         if (result.state === 'passed') counts.passed += 1;
         else if (result.state === 'failed') counts.failed += 1;
         else {
           counts.skipped += 1;
           const why = result.state === 'skipped' ? result.note : 'it never ran';
-          counts.skips.push(`${module.relativeModuleId}: ${test.fullName}${why ? ` (${why})` : ''}`);
+          counts.skips.push(`${file.relativeModuleId}: ${test.fullName}${why ? ` (${why})` : ''}`);
         }
       }
     }
-    const file = process.env.MOTEBOOK_TEST_COUNTS;
-    if (file) writeFileSync(file, JSON.stringify(counts));
+    const target = process.env.MOTEBOOK_TEST_COUNTS;
+    if (target) writeFileSync(target, JSON.stringify(counts));
   }
 }
