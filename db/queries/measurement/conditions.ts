@@ -1,5 +1,5 @@
 import { and, sql, type SQL } from 'drizzle-orm';
-import type { MeasurementFilters } from '../../inputs/measurement';
+import { VERDICTS, type MeasurementFilters } from '../../inputs/measurement';
 
 /**
  * The filters as SQL over `block_result b` joined with its `entry e`. An interval with an open end (null) reaches
@@ -30,18 +30,17 @@ function rangeOfD({ dFrom, dTo, range }: MeasurementFilters): SQL | undefined {
   );
 }
 
-/** The verdicts asked for, as an array; none named means every one. */
+/**
+ * The verdicts asked for, as an array; none named means every one. Arrays travel as one parameter of their own type: a
+ * cast inside the statement would be done anew for every row. Their items have been checked, so no quoting is needed.
+ */
 export function verdictsAsked({ verdict }: MeasurementFilters): SQL {
-  return verdict.length === 0
-    ? sql`enum_range(null::verdict)`
-    : sql`string_to_array(${verdict.join(',')}::text, ',')::verdict[]`;
+  return sql`${`{${(verdict.length > 0 ? verdict : VERDICTS).join(',')}}`}::verdict[]`;
 }
 
 /** Narrows the readable notebooks to those asked for: naming one adds no right to it. */
 export function notebooksAsked({ notebook }: MeasurementFilters): SQL {
-  return notebook.length === 0
-    ? sql`true`
-    : sql`nb.notebook_id = any (string_to_array(${notebook.join(',')}::text, ',')::uuid[])`;
+  return notebook.length === 0 ? sql`true` : sql`nb.notebook_id = any (${`{${notebook.join(',')}}`}::uuid[])`;
 }
 
 export function all(...conditions: (SQL | undefined)[]): SQL {

@@ -1,6 +1,7 @@
 import { sql } from 'drizzle-orm';
 import type { Connection } from '../../client';
 import type { MeasurementRow } from '../../inputs/measurement';
+import { entryPeople } from '../entry/entry-people';
 import type { Hit } from './find-page';
 
 interface Described extends Record<string, unknown>, Omit<MeasurementRow, 'd'> {
@@ -13,20 +14,14 @@ interface Described extends Record<string, unknown>, Omit<MeasurementRow, 'd'> {
 export async function describeRows(db: Connection, hits: readonly Hit[]): Promise<MeasurementRow[]> {
   if (hits.length === 0) return [];
   const wanted = JSON.stringify(hits.map(({ entry, block }, place) => ({ entry, block, place })));
-  // `people`: a person who claimed a client id in the entry and whose edits then reached it, after the one who began it.
   const found = await db.execute<Described>(sql`
-    select e.id as "entryId", b.block_id as "blockId", b.position, b.caption, n.id as "notebookId",
-      n.code as "notebookCode", n.title as "notebookTitle", e.number, e.title,
-      e.experiment_date::text as "experimentDate", e.state, b.verdict, b.d, b.d_lo as lo, b.d_hi as hi,
-      (r.outcome ->> 'tracks')::int as tracks,
-      array(
-        select p.name from person p
-        where p.id = e.created_by or p.id in (select c.person_id from entry_client c where c.entry_id = e.id
-          and exists (select 1 from entry_update u where u.entry_id = e.id and u.person_id = c.person_id))
-        order by p.id <> e.created_by, p.name, p.id) as people
+    select entry.id as "entryId", b.block_id as "blockId", b.position, b.caption, n.id as "notebookId",
+      n.code as "notebookCode", n.title as "notebookTitle", entry.number, entry.title,
+      entry.experiment_date::text as "experimentDate", entry.state, b.verdict, b.d, b.d_lo as lo, b.d_hi as hi,
+      (r.outcome ->> 'tracks')::int as tracks, ${entryPeople} as people
     from jsonb_to_recordset(${wanted}::jsonb) as wanted(entry uuid, block text, place int)
       join block_result b on b.entry_id = wanted.entry and b.block_id = wanted.block
-      join entry e on e.id = b.entry_id
+      join entry on entry.id = b.entry_id
       join notebook n on n.id = b.notebook_id
       left join result r on r.address = b.address
     where b.verdict is not null

@@ -1,6 +1,6 @@
 import { sql, type SQL } from 'drizzle-orm';
 import type { Connection } from '../../client';
-import type { MeasurementQuery } from '../../inputs/measurement';
+import type { MeasurementFilters } from '../../inputs/measurement';
 import type { Actor } from '../../policies/may';
 import { readableNotebooks } from '../../policies/notebook-filter';
 import { all, matches, notebooksAsked, verdictsAsked } from './conditions';
@@ -18,17 +18,22 @@ interface Slice {
 
 type HitRow = Hit & Record<string, unknown>;
 
-/**
- * The next `wanted` matches after a place. The reader's notebooks come first; each gives its own first `wanted` matches
- * from an index (by D: each notebook and verdict), and these short lists are merged. A row whose notebook no longer
- * agrees with its entry's is not found: when rights are in doubt, the answer is no.
- */
+/** The next `wanted` matches after a place. */
 export async function findPage(
   db: Connection,
   actor: Actor,
-  query: MeasurementQuery,
+  query: MeasurementFilters,
   slice: Slice,
 ): Promise<Hit[]> {
+  return (await db.execute<HitRow>(pageStatement(actor, query, slice))).rows;
+}
+
+/**
+ * The statement behind `findPage`. The reader's notebooks come first; each gives its own first `wanted` matches from an
+ * index (by D: each notebook and verdict), and these short lists are merged. A row whose notebook no longer agrees with
+ * its entry's is not found: when rights are in doubt, the answer is no.
+ */
+export function pageStatement(actor: Actor, query: MeasurementFilters, slice: Slice): SQL {
   const byD = slice.part === 'with-d';
   const descending = byD ? query.sort === 'd-desc' : query.sort !== 'date-asc';
   const direction = descending ? sql`desc` : sql`asc`;
@@ -40,7 +45,7 @@ export async function findPage(
   const parts = byD
     ? sql`cross join unnest(${verdictsAsked(query)}) as asked(verdict)`
     : sql`cross join (select ${verdictsAsked(query)} as verdicts) as asked`;
-  const found = await db.execute<HitRow>(sql`
+  return sql`
     select hit.d, hit.date::text as date, hit.number, hit.entry, hit.position, hit.block
     from ${readableNotebooks(actor)} nb ${parts} cross join lateral (
       select b.d, e.experiment_date as date, e.number, b.entry_id as entry, b.position, b.block_id as block
@@ -52,8 +57,7 @@ export async function findPage(
       limit ${slice.wanted}) hit
     where ${notebooksAsked(query)}
     order by ${order(byD ? OUTER_BY_D : OUTER_BY_DATE)}
-    limit ${slice.wanted}`);
-  return found.rows;
+    limit ${slice.wanted}`;
 }
 
 const INNER_BY_D = [sql`b.d`, sql`b.entry_id`, sql`b.block_id`];

@@ -50,7 +50,19 @@ async function count(
   filters: MeasurementFilters,
   also?: SQL,
 ): Promise<Counted> {
-  const found = await db.execute<{ count: number; lo: number | null; hi: number | null }>(sql`
+  const found = await db.execute<{ count: number; lo: number | null; hi: number | null }>(
+    countStatement(actor, filters, also),
+  );
+  const { count: counted = 0, lo = null, hi = null } = found.rows[0] ?? {};
+  return {
+    bounded: { count: Math.min(counted, COUNT_LIMIT), more: counted > COUNT_LIMIT },
+    extent: lo === null || hi === null ? null : { lo, hi },
+  };
+}
+
+/** Counts up to one more than COUNT_LIMIT, and finds the ends above zero of what it counted. */
+export function countStatement(actor: Actor, filters: MeasurementFilters, also?: SQL): SQL {
+  return sql`
     select count(*) as count, min(found.lo) as lo, max(found.hi) as hi
     from (
       select least(nullif(greatest(b.d, 0), 0), nullif(greatest(b.d_lo, 0), 0)) as lo,
@@ -59,10 +71,5 @@ async function count(
         join block_result b on b.notebook_id = nb.notebook_id and b.verdict = any (${verdictsAsked(filters)})
         join entry e on e.id = b.entry_id and e.notebook_id = b.notebook_id
       where ${all(notebooksAsked(filters), matches(filters), also)}
-      limit ${COUNT_LIMIT + 1}) found`);
-  const { count: counted = 0, lo = null, hi = null } = found.rows[0] ?? {};
-  return {
-    bounded: { count: Math.min(counted, COUNT_LIMIT), more: counted > COUNT_LIMIT },
-    extent: lo === null || hi === null ? null : { lo, hi },
-  };
+      limit ${COUNT_LIMIT + 1}) found`;
 }

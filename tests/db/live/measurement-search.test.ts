@@ -47,7 +47,7 @@ async function everyRow(
 
 const ids = (rows: readonly { blockId: string }[]) => rows.map((row) => row.blockId);
 
-const reversed = <T>(a: T | null, b: T | null) => a !== null && b !== null && b < a;
+const reversed = <T extends number | string>(a: T | null, b: T | null) => a !== null && b !== null && b < a;
 const bound = fc.option(fc.constantFrom(0, 1e-9, 0.05, 0.099, 0.1, 0.3, 0.43, 0.5, 1, 3, 2300, 1e6));
 const day = fc.option(fc.constantFrom('1900-01-01', '2026-01-05', '2026-03-02', '2026-03-03', '2026-12-31'));
 const question = fc
