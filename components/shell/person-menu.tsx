@@ -37,6 +37,8 @@ export function PersonMenu({
       console.warn('sign-out could not be sent', error);
       return setFault('The server cannot be reached, so you are still signed in here. Try again.');
     }
+    // A full load, so that nothing of this person stays in the page's memory.
+    // eslint-disable-next-line @next/next/no-location-assign-relative-destination
     location.assign('/sign-in');
   }
 
