@@ -33,7 +33,8 @@ export async function ensureBuild(
   if (existsSync(stamp) && readFileSync(stamp, 'utf8') === wanted) return;
   say('Building the pages (a minute or two; only when the sources have changed) …');
   // A build that is cut short leaves pages that fit nobody's sources.
-  rmSync(stamp, { force: true });
+  const proof = path.join(project, '.next', 'BUILD_ID');
+  for (const file of [stamp, proof]) rmSync(file, { force: true });
   const build = spawnNode(project, {
     name: 'build',
     args: ['node_modules/next/dist/bin/next', 'build'],
@@ -50,7 +51,9 @@ export async function ensureBuild(
   });
   signal.removeEventListener('abort', stop);
   signal.throwIfAborted();
-  if (code !== 0) throw new Error(`The pages could not be built:\n${printed.trim()}`);
+  if (code !== 0 || !existsSync(proof)) {
+    throw new Error(`The pages could not be built:\n${printed.trim()}`);
+  }
   writeFileSync(stamp, wanted);
 }
 

@@ -26,6 +26,8 @@ export class Children {
   private stopping = false;
   /** Called whenever the process ids have changed. */
   onChange: () => void = () => undefined;
+  /** Called when a process has died several times in a row soon after its start; it is started again all the same. */
+  onHopeless: (complaint: string) => void = (complaint) => this.say(complaint);
 
   constructor(
     private readonly project: string,
@@ -52,14 +54,17 @@ export class Children {
       process.stderr.write(text.toString('utf8').replace(/^(?=.)/gm, `[${plan.name}] `));
     });
     child.on('error', (error) => this.say(`${plan.name} could not be started: ${error.message}`));
-    // "close" comes after the last line it printed, unlike "exit".
-    child.on('close', (code, signal) => {
-      closeSync(log);
+    child.on('exit', (code, signal) => {
       this.running.delete(plan.name);
       if (this.stopping) return;
-      this.say(`${plan.name} ended (${signal ?? `code ${code}`}); starting it again. Its log: ${file}`);
-      setTimeout(() => this.start(plan), this.nextPause(plan.name, Date.now() - started));
+      const pause = this.nextPause(plan.name, Date.now() - started);
+      const how = `${plan.name} ended (${signal ?? `code ${code}`})`;
+      if (pause === LONGEST_PAUSE_MS) this.onHopeless(`${how} again and again. Its log: ${file}`);
+      else this.say(`${how}; starting it again. Its log: ${file}`);
+      setTimeout(() => this.start(plan), pause);
     });
+    // Comes after the last line it printed, unlike "exit".
+    child.on('close', () => closeSync(log));
     this.running.set(plan.name, child);
     this.onChange();
   }
@@ -85,7 +90,11 @@ export function spawnNode(project: string, plan: ChildPlan): ChildProcess {
     ['--import', path.join(project, 'db/setup/end-with-parent.mjs'), ...plan.args],
     {
       cwd: project,
-      env: { ...inherited(), ...plan.environment } as NodeJS.ProcessEnv,
+      env: {
+        ...inherited(),
+        ...plan.environment,
+        MOTEBOOK_SUPERVISOR: String(process.pid),
+      } as unknown as NodeJS.ProcessEnv,
       stdio: ['ignore', 'pipe', 'pipe', 'ipc'],
       detached: true,
     },

@@ -7,8 +7,12 @@ function end() {
   setTimeout(() => process.kill(process.pid, 'SIGKILL'), GRACE_MS).unref();
 }
 
-process.on('disconnect', end);
-// The supervisor may be gone before this line was reached.
-if (process.connected === false) end();
-// The channel must not keep a process alive that has finished by itself.
-process.channel?.unref();
+if (process.connected === false) {
+  // The supervisor was gone before this line was reached.
+  end();
+} else if (process.ppid === Number(process.env.MOTEBOOK_SUPERVISOR)) {
+  process.on('disconnect', end);
+  // The channel must not keep a process alive that has finished by itself. Processes that this one forks load this
+  // file too, but live by their channel: it is left alone there.
+  process.channel?.unref();
+}

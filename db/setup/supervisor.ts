@@ -12,6 +12,7 @@ export class Supervisor {
   private readonly ending = new AbortController();
   private readonly children: Children;
   private cluster: Cluster | null = null;
+  private isUp = false;
 
   constructor(
     project: string,
@@ -21,6 +22,9 @@ export class Supervisor {
   ) {
     this.children = new Children(project, path.join(folder, 'logs'), say);
     this.children.onChange = () => this.writeNote();
+    // A start that cannot succeed ends; what has been up goes on trying.
+    this.children.onHopeless = (complaint) =>
+      this.isUp ? say(complaint) : this.ending.abort(new Error(complaint));
     this.writeNote();
   }
 
@@ -46,6 +50,7 @@ export class Supervisor {
       const up = bringUp(this);
       // Whoever asks to end does not wait for what is still being brought up; that fails as its ground goes.
       await Promise.race([up, ended]);
+      this.isUp = true;
       await ended;
     } catch (error) {
       if (this.signal.reason !== ASKED) throw error;

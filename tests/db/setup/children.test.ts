@@ -71,6 +71,35 @@ test('a process that is killed is started again, and the log says so', async () 
   await until(() => all.every((pid) => !isAlive(pid)), 'the end of all processes');
 });
 
+test('a process that forks others by a channel of their own can still wait for their answer', async () => {
+  const children = new Children(PROJECT, folder, () => undefined);
+  const file = path.join(folder, 'forker.mjs');
+  // The worker has nothing to do but to wait for a question, as the workers of a build have.
+  writeFileSync(
+    file,
+    `import { fork } from 'node:child_process';
+     if (process.argv[2]) process.on('message', () => { process.send('answer'); process.exit(); });
+     else {
+       const worker = fork(process.argv[1], ['worker']);
+       worker.on('message', (text) => console.log(text)).on('exit', () => process.exit());
+       setTimeout(() => worker.send('question'), 1000);
+     }`,
+  );
+  children.start({ name: 'forker', args: [file], environment: {} });
+  await until(() => readFileSync(path.join(folder, 'forker.log'), 'utf8').includes('answer'), 'the answer');
+  await children.stop();
+});
+
+test('a process that dies at once, again and again, is reported as hopeless', async () => {
+  const children = new Children(PROJECT, folder, () => undefined);
+  const complaints: string[] = [];
+  children.onHopeless = (complaint) => complaints.push(complaint);
+  children.start({ name: 'broken', args: ['--eval', 'process.exit(3)'], environment: {} });
+  await until(() => complaints.length > 0, 'the complaint');
+  expect(complaints[0]).toMatch(/broken ended \(code 3\) again and again/);
+  await children.stop();
+});
+
 test('what a process prints is in its log, errors too, and a large log is set aside', async () => {
   const logs = path.join(folder, 'logs');
   const children = new Children(PROJECT, logs, () => undefined);
