@@ -27,7 +27,7 @@ export const boundOfD = z
     abort: true,
   })
   .refine((text) => !/^[-−]/.test(text), { error: 'D is never negative. Enter zero or more.', abort: true })
-  .refine((text) => /^(\d{1,20}\.?\d{0,20}|\.\d{1,20})(e[+-]?\d{1,3})?$/i.test(text), {
+  .refine((text) => /^(\d{1,25}\.?\d{0,25}|\.\d{1,25})(e[+-]?\d{1,3})?$/i.test(text), {
     error: 'Enter a number in µm²/s, such as 0.43 or 2e-3.',
     abort: true,
   })
