@@ -1,7 +1,7 @@
 import { createHash } from 'node:crypto';
 import { existsSync, lstatSync, readdirSync, readFileSync, rmSync, writeFileSync } from 'node:fs';
 import path from 'node:path';
-import { end, spawnNode } from './children';
+import { end, endGroup, spawnNode } from './children';
 
 /** What a build is made of; anything else (tests, papers) does not ask for a new one. */
 const SOURCES = [
@@ -47,6 +47,7 @@ export async function ensureBuild(
   signal.addEventListener('abort', stop, { once: true });
   const code = await new Promise<number | null>((resolve, reject) => {
     build.once('error', reject);
+    build.once('exit', () => endGroup(build.pid));
     build.once('close', resolve);
   });
   signal.removeEventListener('abort', stop);

@@ -2,6 +2,7 @@ import { spawn, type ChildProcess } from 'node:child_process';
 import { closeSync, mkdirSync, writeSync } from 'node:fs';
 import path from 'node:path';
 import { openLog } from './log-file';
+import { sendSignal } from './send-signal';
 
 export interface ChildPlan {
   readonly name: string;
@@ -56,6 +57,7 @@ export class Children {
     child.on('error', (error) => this.say(`${plan.name} could not be started: ${error.message}`));
     child.on('exit', (code, signal) => {
       this.running.delete(plan.name);
+      endGroup(child.pid);
       if (this.stopping) return;
       const pause = this.nextPause(plan.name, Date.now() - started);
       const how = `${plan.name} ended (${signal ?? `code ${code}`})`;
@@ -109,6 +111,11 @@ export async function end(child: ChildProcess): Promise<void> {
   const insist = setTimeout(() => child.kill('SIGKILL'), STOP_MS);
   await ended;
   clearTimeout(insist);
+}
+
+/** Ends what a process that was killed has left behind in its group; a port that such a rest holds stays busy for ever. */
+export function endGroup(leader: number | undefined): void {
+  if (leader !== undefined) sendSignal(-leader, 'SIGKILL');
 }
 
 /** What a process inherits: where programs and certificates are, never this machine's other secrets. */

@@ -64,7 +64,8 @@ export async function endOrphans(folder: string, project: string): Promise<void>
   const note = findRunNote(folder);
   if (!note) return;
   const orphans = Object.values(note.children).filter((pid) => pid > 0 && isOurs(pid, project));
-  for (const pid of orphans) sendSignal(pid, 'SIGKILL');
+  // Each leads a group of its own, in which lies what it forked.
+  for (const pid of orphans) for (const whom of [-pid, pid]) sendSignal(whom, 'SIGKILL');
   while (orphans.some((pid) => isOurs(pid, project))) await pause(50);
   removeRunNote(folder);
 }

@@ -90,6 +90,25 @@ test('a process that forks others by a channel of their own can still wait for t
   await children.stop();
 });
 
+test('what a killed process leaves behind is ended before it is started again', async () => {
+  const children = new Children(PROJECT, folder, () => undefined);
+  const program = `const { spawn } = require('node:child_process');
+    const rest = spawn(process.execPath, ['--eval', 'setInterval(() => {}, 1000)'], { stdio: 'ignore' });
+    console.log('rest', rest.pid); setInterval(() => {}, 1000);`;
+  children.start({ name: 'leaver', args: ['--eval', program], environment: {} });
+  const rests = () =>
+    [...readFileSync(path.join(folder, 'leaver.log'), 'utf8').matchAll(/rest (\d+)/g)].map((m) =>
+      Number(m[1]),
+    );
+  await until(() => rests().length === 1, 'a process of a process');
+  const [rest = 0] = rests();
+  process.kill(children.pids().leaver ?? 0, 'SIGKILL');
+  await until(() => rests().length === 2, 'the second start');
+  expect(isAlive(rest)).toBe(false);
+  await children.stop();
+  await until(() => !rests().some(isAlive), 'the end of all');
+});
+
 test('a process that dies at once, again and again, is reported as hopeless', async () => {
   const children = new Children(PROJECT, folder, () => undefined);
   const complaints: string[] = [];
