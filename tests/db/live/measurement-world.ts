@@ -65,7 +65,8 @@ export async function makeWorld(database: TestDatabase, seed: number): Promise<W
     const blocks = random.whole(5);
     for (let position = 1; position <= blocks; position += 1) {
       const status = random.uniform() < 0.85 ? 'done' : pick(['empty', 'waiting', 'failed'] as const);
-      const verdict = status === 'done' ? pick(VERDICTS) : null;
+      // A row that is not done may still hold numbers; they are no measurement.
+      const verdict = status === 'done' || random.uniform() < 0.5 ? pick(VERDICTS) : null;
       const d = verdict === null || verdict === 'anomalous' || random.uniform() < 0.1 ? null : pick(VALUES);
       const half = d === null ? 0 : pick([0, 0.02, 0.3, 5]) * d;
       rows.push({
