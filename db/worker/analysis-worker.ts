@@ -9,6 +9,11 @@ interface Job {
   readonly reject: (error: Error) => void;
 }
 
+/** What ended a job and its thread; `cause` of the error that the job gets. */
+export type WorkerEnd = 'time' | 'memory' | 'crash';
+
+const CRASHED = 'The worker ended unexpectedly. Try again.';
+
 export interface AnalysisWorkerOptions {
   /** Makes the thread; in a bundled program its file has to be named where it is made. */
   readonly create: () => Worker;
@@ -35,7 +40,10 @@ export class AnalysisWorker {
     this.queue = options.queue ?? 50;
   }
 
-  /** @throws AppError slow-down - too much waits; unreadable - it took too long or too much memory. */
+  /**
+   * @throws AppError slow-down - too much waits; unreadable - it took too long or too much memory, or the thread died.
+   * @throws Error - the question itself threw.
+   */
   run<K extends WorkerRequest['kind']>(
     request: Extract<WorkerRequest, { kind: K }>,
   ): Promise<WorkerAnswers[K]> {
@@ -79,6 +87,7 @@ export class AnalysisWorker {
     const timer = setTimeout(() => {
       this.fail(
         `This took longer than ${seconds} seconds and was stopped. Leave out tracks, or split the file.`,
+        'time',
       );
     }, this.limitMs);
     this.running = { job, timer };
@@ -99,26 +108,31 @@ export class AnalysisWorker {
       else job.reject(new Error(`worker: ${error}`));
       this.next();
     });
-    worker.on('error', (error) => {
+    worker.on('error', (error: NodeJS.ErrnoException) => {
       if (this.worker !== worker) return;
       console.error(`analysis worker: ${error.message}`);
-      this.fail('This file needs more memory than a worker has. Leave out tracks, or split the file.');
+      if (error.code === 'ERR_WORKER_OUT_OF_MEMORY') {
+        this.fail(
+          'This file needs more memory than a worker has. Leave out tracks, or split the file.',
+          'memory',
+        );
+      } else this.fail(CRASHED, 'crash');
     });
     worker.on('exit', () => {
-      if (this.worker === worker) this.fail('The worker ended unexpectedly. Try again.');
+      if (this.worker === worker) this.fail(CRASHED, 'crash');
     });
     return worker;
   }
 
   /** Ends the thread, tells whoever waited for it, and goes on with a fresh one. */
-  private fail(sentence: string): void {
+  private fail(sentence: string, cause: WorkerEnd): void {
     const { worker, running } = this;
     this.worker = null;
     this.running = null;
     void worker?.terminate();
     if (running) {
       clearTimeout(running.timer);
-      running.job.reject(new AppError('unreadable', { sentence }));
+      running.job.reject(new AppError('unreadable', { sentence, cause }));
     }
     this.next();
   }
