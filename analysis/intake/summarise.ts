@@ -41,7 +41,8 @@ export function summarise(
       tracks: lengths.length,
       frames: new Set(byTrack.flat()).size,
       longestTrackFrames: lengths.reduce((most, length) => Math.max(most, length), 0),
-      shortestTrackFrames: lengths.reduce((least, length) => Math.min(least, length), Infinity) || 0,
+      shortestTrackFrames:
+        lengths.length === 0 ? 0 : lengths.reduce((least, length) => Math.min(least, length)),
       gaps,
       missingFrames,
       frameInterval: data.frameInterval ?? (data.time && step !== null ? Number(step.toPrecision(10)) : null),
