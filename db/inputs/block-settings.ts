@@ -12,6 +12,13 @@ const lag = z.number().int().min(1).max(1_000_000);
 
 export const MAX_READINGS_PER_BLOCK = 50;
 
+/** Text that the database can keep: no NUL, no half of a surrogate pair. */
+const words = (most: number) =>
+  z
+    .string()
+    .max(most)
+    .refine((text) => !text.includes('\0') && text.isWellFormed());
+
 /** Shape of each attribute. The editor's node, the projector and the settings form all take it from here. */
 export const blockAttributes = {
   blockId: z.uuid(),
@@ -36,7 +43,7 @@ export const blockAttributes = {
   particleDiameter: positive.nullable(),
   geometry: z.enum(['box', 'circle', 'sphere']),
   excludedTracks: z
-    .array(z.object({ reading: z.number().int().min(0), track: z.string(), reason: z.string().max(300) }))
+    .array(z.object({ reading: z.number().int().min(0), track: words(1000), reason: words(300) }))
     .max(10_000),
 } as const;
 
