@@ -33,18 +33,20 @@ export function findClosedParent(folder: string): string | null {
  */
 export function makeDataFolder(folder: string): void {
   const missing: string[] = [];
-  for (let at = folder; !existsSync(at); at = path.dirname(at)) missing.unshift(at);
+  let there = folder;
+  for (; !existsSync(there); there = path.dirname(there)) missing.unshift(there);
+  // The folder itself, when it is there, can be opened below; the way to it belongs to somebody else.
+  const closed = isRoot() ? findClosedParent(there === folder ? path.dirname(folder) : there) : null;
+  if (closed !== null) {
+    throw new Error(
+      `PostgreSQL runs as the user postgres, who may not pass through ${closed} to the data folder ${folder}. Set MOTEBOOK_DATA to a folder that other users can reach, or allow it with: chmod o+x ${closed}`,
+    );
+  }
   // One by one, because a strict umask would close the folders on the way too.
   for (const at of missing) {
     mkdirSync(at, { mode: 0o711 });
     chmodSync(at, 0o711);
   }
-  if (!isRoot()) return;
   const { mode } = statSync(folder);
-  if ((mode & PASS_THROUGH) !== PASS_THROUGH) chmodSync(folder, (mode & 0o7777) | PASS_THROUGH);
-  const closed = findClosedParent(path.dirname(folder));
-  if (closed === null) return;
-  throw new Error(
-    `PostgreSQL runs as the user postgres, who may not pass through ${closed} to the data folder ${folder}. Set MOTEBOOK_DATA to a folder that other users can reach, or allow it with: chmod o+x ${closed}`,
-  );
+  if (isRoot() && (mode & PASS_THROUGH) !== PASS_THROUGH) chmodSync(folder, (mode & 0o7777) | PASS_THROUGH);
 }

@@ -1,9 +1,10 @@
 import { createHash } from 'node:crypto';
-import { chmodSync, mkdirSync, mkdtempSync, rmSync, statSync } from 'node:fs';
+import { chmodSync, existsSync, mkdirSync, mkdtempSync, rmSync, statSync } from 'node:fs';
 import { tmpdir } from 'node:os';
 import path from 'node:path';
 import { afterEach, beforeEach, describe, expect, test } from 'vitest';
 import { dataFolder, findClosedParent, makeDataFolder } from '../../../db/setup/data-folder';
+import { isRoot } from '../../../db/setup/postgres-binaries';
 
 let folder: string;
 beforeEach(() => {
@@ -57,3 +58,13 @@ test('no right is taken from a folder that was there before', () => {
   makeDataFolder(folder);
   expect(statSync(folder).mode & 0o777).toBe(0o755);
 });
+
+test.runIf(isRoot())(
+  'as root, a folder that postgres cannot reach is refused with the remedy, and not made',
+  () => {
+    chmodSync(folder, 0o700);
+    const made = path.join(folder, 'data', 'inner');
+    expect(() => makeDataFolder(made)).toThrow(new RegExp(`chmod o\\+x ${folder}$`));
+    expect(existsSync(path.join(folder, 'data'))).toBe(false);
+  },
+);
