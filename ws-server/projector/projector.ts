@@ -1,17 +1,17 @@
-import { and, eq, gt, isNull, or, sql } from 'drizzle-orm';
+import { sql } from 'drizzle-orm';
 import { ENGINE_VERSION } from '../../analysis/analyse';
 import { connect, type Database } from '../../db/client';
-import { keepResult } from '../../db/commands/projection/keep-result';
-import { writeProjection, type WantedResult } from '../../db/commands/projection/write-projection';
-import { AppError } from '../../db/errors';
+import { writeProjection } from '../../db/commands/projection/write-projection';
 import type { StoredFileRef } from '../../db/files/open-stored-file';
 import { loadDocument } from '../../db/queries/document/load-document';
-import { blockResult, entry, entryText } from '../../db/schema/index';
 import { AnalysisWorker } from '../../db/worker/analysis-worker';
 import { newAnalysisThread } from '../../db/worker/new-thread';
 import { Listener } from '../listener';
+import { DueEntries } from './due-entries';
+import { findBehind, findOfOtherEngines, findWaiting } from './find-due';
 import { readDocument } from './read-document';
-import { saveSnapshotIfDue } from './snapshot';
+import { ResultQueue } from './result-queue';
+import { keepSnapshotWhenDue } from './snapshot';
 
 export interface ProjectorOptions {
   readonly databaseUrl: string;
@@ -19,18 +19,22 @@ export interface ProjectorOptions {
   readonly openFile: (file: StoredFileRef) => Promise<Buffer>;
   /** For tests: another thread, or a shorter limit. */
   readonly worker?: AnalysisWorker;
+  /** For tests: the pause before a result is tried again, ms. */
+  readonly firstPauseMs?: number;
 }
 
 export interface RunningProjector {
+  /** Finishes what is being written, leaves the rest for the next start. */
   stop(): Promise<void>;
 }
 
 /** How often everything is looked at again, announced or not. */
 const SCAN_MS = 2_000;
-/** Pause before a file that could not be fetched is asked for again. */
-const RETRY_MS = 3_000;
 
-/** Follows committed updates and writes text, blocks and current results of each entry. */
+/**
+ * Follows committed updates and writes text, blocks and current results of each entry (integrity rule 2.2a). It owns none
+ * of the record: whatever it leaves undone, the next one finds and does. @throws Error when the database cannot be reached.
+ */
 export async function startProjector(options: ProjectorOptions): Promise<RunningProjector> {
   const projector = new Projector(options);
   await projector.start();
@@ -39,145 +43,122 @@ export async function startProjector(options: ProjectorOptions): Promise<Running
 
 class Projector implements RunningProjector {
   private readonly db: Database;
-  private readonly worker: AnalysisWorker;
+  private readonly results: ResultQueue;
   private readonly listener: Listener;
-  /** Entries to look at; an entry that changes while it is being read is read again. */
-  private readonly due = new Set<string>();
-  private readonly computing = new Set<string>();
+  private readonly due = new DueEntries();
   private working: Promise<void> | null = null;
-  private timer: NodeJS.Timeout | null = null;
+  private wake: NodeJS.Timeout | null = null;
+  private scanning: NodeJS.Timeout | null = null;
   private stopped = false;
 
-  constructor(private readonly options: ProjectorOptions) {
+  constructor(options: ProjectorOptions) {
     this.db = connect(options.databaseUrl, { max: 4, name: 'motebook-projector' });
-    this.worker = options.worker ?? new AnalysisWorker({ create: () => newAnalysisThread() });
+    this.results = new ResultQueue({
+      db: this.db,
+      worker: options.worker ?? new AnalysisWorker({ create: () => newAnalysisThread() }),
+      openFile: options.openFile,
+      onNews: (entryIds) => entryIds.forEach((entryId) => this.mark(entryId)),
+      complain: (what, error) => this.complain(what, error),
+      firstPauseMs: options.firstPauseMs,
+    });
     this.listener = new Listener(
       options.databaseUrl,
       { motebook_update: (payload) => this.mark((JSON.parse(payload) as { entry: string }).entry) },
+      // Whatever was announced while nobody listened is found by looking.
       () => void this.scan(),
     );
   }
 
   async start(): Promise<void> {
     await this.listener.start();
+    for (const entryId of await findOfOtherEngines(this.db)) this.mark(entryId);
     await this.scan();
-    this.timer = setInterval(() => void this.scan(), SCAN_MS);
+    this.scanning = setInterval(() => void this.scan(), SCAN_MS);
   }
 
   async stop(): Promise<void> {
     this.stopped = true;
-    if (this.timer) clearInterval(this.timer);
+    if (this.scanning) clearInterval(this.scanning);
+    if (this.wake) clearTimeout(this.wake);
     await this.listener.stop();
-    await this.worker.stop();
+    await this.results.stop();
     await this.working;
     await this.db.$client.end();
   }
 
   private mark(entryId: string): void {
-    this.due.add(entryId);
-    this.working ??= this.work();
+    this.due.mark(entryId);
+    this.work();
   }
 
-  /** Entries whose log is ahead of what was projected, and blocks that still wait for a result. */
+  /** Reads marked entries one after the other, now those that may be read now, the others when they may. */
+  private work(): void {
+    if (this.stopped || this.working) return;
+    if (this.wake) clearTimeout(this.wake);
+    this.wake = null;
+    this.working = this.projectDue().finally(() => {
+      this.working = null;
+      const next = this.due.nextInMs();
+      if (next !== null && !this.stopped) this.wake = setTimeout(() => this.work(), next);
+    });
+  }
+
   private async scan(): Promise<void> {
     if (this.stopped) return;
     try {
-      const behind = await this.db
-        .select({ id: entry.id })
-        .from(entry)
-        .leftJoin(entryText, eq(entryText.entryId, entry.id))
-        .where(
-          and(
-            gt(entry.headSeq, 0),
-            or(
-              isNull(entryText.seq),
-              gt(entry.headSeq, entryText.seq),
-              sql`${entry.epoch} <> ${entryText.epoch}`,
-            ),
-          ),
-        );
-      const waiting = await this.db
-        .selectDistinct({ id: blockResult.entryId })
-        .from(blockResult)
-        .where(eq(blockResult.status, 'waiting'));
-      for (const { id } of [...behind, ...waiting]) this.mark(id);
+      for (const entryId of await findBehind(this.db)) this.mark(entryId);
+      for (const entryId of await findWaiting(this.db)) {
+        if (!this.results.isBusyFor(entryId)) this.mark(entryId);
+      }
     } catch (error) {
       this.complain('looking for entries', error);
     }
   }
 
-  private async work(): Promise<void> {
-    try {
-      for (const entryId of this.due) {
-        this.due.delete(entryId);
-        if (this.stopped) return;
-        // Trouble with one entry must not hold up the others; the next scan looks at it again.
-        await this.project(entryId).catch((error: unknown) => this.complain(`entry ${entryId}`, error));
+  private async projectDue(): Promise<void> {
+    for (let entryId = this.due.take(); entryId !== null; entryId = this.due.take()) {
+      let fault = false;
+      try {
+        await this.project(entryId);
+      } catch (error) {
+        fault = true;
+        this.complain(`entry ${entryId}`, error);
       }
-    } finally {
-      this.working = null;
+      this.due.done(entryId, fault);
+      if (this.stopped) return;
     }
   }
 
   private async project(entryId: string): Promise<void> {
     const loaded = await loadDocument(this.db, entryId);
     if (!loaded) return;
-    const { doc, epoch, seq } = loaded;
+    const doc = await keepSnapshotWhenDue(this.db, entryId, loaded, (fault) =>
+      this.complain(`entry ${entryId}`, new Error(fault)),
+    );
     const { plain, blocks } = readDocument(doc);
-    await saveSnapshotIfDue(this.db, entryId, loaded);
     doc.destroy();
-    const wanted = await writeProjection(this.db, {
-      entryId,
-      epoch,
-      seq,
-      plain,
-      engine: ENGINE_VERSION,
-      blocks: blocks.map((block) => ({
-        blockId: block.blockId,
-        caption: block.attributes.caption,
-        readingIds: block.attributes.readingIds,
-        settings: block.settings,
-        faulty: block.faulty,
-      })),
-    });
-    if (wanted === null) return;
-    await this.announce(entryId, seq);
-    // Not awaited: a long analysis must not keep other entries' words from being projected.
-    for (const one of wanted) void this.compute(entryId, one);
-  }
-
-  private async compute(entryId: string, wanted: WantedResult): Promise<void> {
-    if (this.computing.has(wanted.address) || this.stopped) return;
-    this.computing.add(wanted.address);
-    try {
-      const started = performance.now();
-      const readings = [];
-      for (const { hash, spec, file } of wanted.readings) {
-        readings.push({ hash, spec, name: file.name, bytes: await this.options.openFile(file) });
-      }
-      const outcome = await this.worker
-        .run<'analyse'>({ kind: 'analyse', readings, settings: wanted.settings })
-        .catch((error: unknown) => {
-          // Too long or too large is an outcome of this question; anything else is ours and is tried again.
-          if (error instanceof AppError && error.code === 'unreadable') {
-            return {
-              failed: true as const,
-              engine: ENGINE_VERSION,
-              code: 'too-much',
-              message: error.sentence,
-            };
-          }
-          throw error;
-        });
-      const milliseconds = Math.round(performance.now() - started);
-      await keepResult(this.db, { address: wanted.address, engine: ENGINE_VERSION, outcome, milliseconds });
-      this.computing.delete(wanted.address);
-      this.mark(entryId);
-    } catch (error) {
-      this.complain(`a result of entry ${entryId}`, error);
-      // The block keeps waiting; the scan brings it back after a pause.
-      setTimeout(() => this.computing.delete(wanted.address), RETRY_MS).unref();
-    }
+    const written = await writeProjection(
+      this.db,
+      {
+        entryId,
+        epoch: loaded.epoch,
+        seq: loaded.seq,
+        plain,
+        engine: ENGINE_VERSION,
+        blocks: blocks.map(({ blockId, attributes, settings, faulty }) => ({
+          blockId,
+          caption: attributes.caption,
+          readingIds: attributes.readingIds,
+          settings,
+          faulty,
+        })),
+      },
+      (address) => this.results.troubleOf(address),
+    );
+    if (written === null) return;
+    this.results.want(entryId, written.wanted);
+    // Open pages ask again for the blocks when they hear this; words alone are no news to them.
+    if (written.changed) await this.announce(entryId, loaded.seq);
   }
 
   private async announce(entryId: string, seq: number): Promise<void> {

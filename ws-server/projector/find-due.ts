@@ -1,0 +1,39 @@
+import { and, eq, gt, isNull, ne, or } from 'drizzle-orm';
+import { ENGINE_VERSION } from '../../analysis/analyse';
+import type { Database } from '../../db/client';
+import { blockResult, entry, entryText, result } from '../../db/schema/index';
+
+/** Entries whose log is ahead of what was projected, announced or not. */
+export async function findBehind(db: Database): Promise<string[]> {
+  const rows = await db
+    .select({ id: entry.id })
+    .from(entry)
+    .leftJoin(entryText, eq(entryText.entryId, entry.id))
+    .where(
+      and(
+        gt(entry.headSeq, 0),
+        or(isNull(entryText.seq), gt(entry.headSeq, entryText.seq), ne(entry.epoch, entryText.epoch)),
+      ),
+    );
+  return rows.map((row) => row.id);
+}
+
+/** Entries with a block that waits for its result. */
+export async function findWaiting(db: Database): Promise<string[]> {
+  const rows = await db
+    .selectDistinct({ id: blockResult.entryId })
+    .from(blockResult)
+    .where(eq(blockResult.status, 'waiting'));
+  return rows.map((row) => row.id);
+}
+
+/** Drafts that still show a result of another engine: asked once, when a new engine starts. Signed entries keep theirs. */
+export async function findOfOtherEngines(db: Database): Promise<string[]> {
+  const rows = await db
+    .selectDistinct({ id: blockResult.entryId })
+    .from(blockResult)
+    .innerJoin(result, eq(result.address, blockResult.address))
+    .innerJoin(entry, eq(entry.id, blockResult.entryId))
+    .where(and(eq(entry.state, 'draft'), ne(result.engine, ENGINE_VERSION)));
+  return rows.map((row) => row.id);
+}
