@@ -103,8 +103,12 @@ export function productionPlan(settings: Settings): ChildPlan[] {
     ),
   );
   const { MOTEBOOK_DATABASE_OWNER: _owner, ...shared } = given;
-  const { MOTEBOOK_DATABASE_WS: wsDatabase, ...withoutWs } = shared;
-  const { MOTEBOOK_DATABASE_APP: _app, ...withoutApp } = shared;
+  const { MOTEBOOK_DATABASE_WS: _ws, ...withoutWs } = shared;
+  const forWs = Object.fromEntries(
+    Object.entries(shared).filter(
+      ([name]) => name !== 'MOTEBOOK_DATABASE_APP' && !name.startsWith('UPLOADTHING_'),
+    ),
+  );
   const production = { NODE_ENV: 'production', NEXT_TELEMETRY_DISABLED: '1' };
   return [
     {
@@ -116,9 +120,8 @@ export function productionPlan(settings: Settings): ChildPlan[] {
       name: 'ws',
       args: ['--import', 'tsx', 'ws-server/main.ts'],
       environment: {
-        ...withoutApp,
+        ...forWs,
         ...production,
-        ...(wsDatabase ? { MOTEBOOK_DATABASE_WS: wsDatabase } : {}),
       },
     },
     {
