@@ -51,6 +51,8 @@ export default {
         },
         '@media (prefers-color-scheme: dark)': { ':root:not([data-theme="light"])': variables('dark') },
         ':root[data-theme="dark"]': variables('dark'),
+        // Paper is light, whatever the window is.
+        '@media print': { ':root:root:root': variables('light') },
       });
     }),
   ],
