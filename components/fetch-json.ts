@@ -1,0 +1,43 @@
+import type { z } from 'zod';
+import { ERRORS, type Refusal } from '@/db/errors';
+import { RefusedError } from './query-provider';
+
+/**
+ * Asks one of the product's own routes and checks the answer's shape.
+ * @throws RefusedError - the server's sentence, ready to be shown; also when no server could be reached.
+ */
+export async function fetchJson<Shape extends z.ZodType>(
+  path: string,
+  shape: Shape,
+  options: { body?: unknown; signal?: AbortSignal } = {},
+): Promise<z.output<Shape>> {
+  return shape.parse(await (await send(path, options)).json());
+}
+
+/** The same for an answer that is a file. */
+export async function fetchFile(path: string, options: { body?: unknown }): Promise<Blob> {
+  return (await send(path, options)).blob();
+}
+
+async function send(path: string, options: { body?: unknown; signal?: AbortSignal }): Promise<Response> {
+  const init: RequestInit = { signal: options.signal ?? null };
+  if (options.body !== undefined) {
+    init.method = 'POST';
+    init.body = JSON.stringify(options.body);
+    init.headers = { 'Content-Type': 'application/json' };
+  }
+  let response: Response;
+  try {
+    response = await fetch(path, init);
+  } catch (error) {
+    if ((error as Error).name === 'AbortError') throw error;
+    throw new RefusedError(503, 'The server cannot be reached. Check the connection, then try again.', {});
+  }
+  if (response.ok) return response;
+  const refusal = (await response.json().catch(() => null)) as Refusal | null;
+  throw new RefusedError(
+    response.status,
+    refusal?.sentence ?? ERRORS.unexpected.sentence,
+    refusal?.fields ?? {},
+  );
+}
