@@ -6,6 +6,8 @@ import type { BlockAttributes } from '../../db/inputs/block-settings';
 /** What the editor hands to whatever draws a diffusion block. */
 export interface BlockViewProps {
   readonly attributes: BlockAttributes;
+  /** Attributes whose content in the document cannot be used; `attributes` has their defaults instead. */
+  readonly faulty?: readonly (keyof BlockAttributes)[];
   /** Writes settings into the document; each attribute is one shared setting. */
   readonly update: (change: Partial<BlockAttributes>) => void;
   readonly remove: () => void;
