@@ -10,7 +10,7 @@ export interface NotebookChoice {
   readonly title: string;
 }
 
-const line = 'small inline-flex min-h-9 items-center gap-2 max-desk:min-h-11 pointer-coarse:min-h-11';
+const line = 'small inline-flex min-h-10 items-center gap-2 max-desk:min-h-11 pointer-coarse:min-h-11';
 const box = 'size-4 shrink-0 accent-malachite';
 
 /** Puts an item in or takes it out, in the order of `all`: the same choice always reads the same. */

@@ -56,11 +56,11 @@ export function FilterForm({
     <form
       role="search"
       aria-label="Measurements"
-      className="space-y-5 border-y py-5"
+      className="space-y-1 border-y py-4 max-tab:space-y-2"
       onSubmit={(event) => event.preventDefault()}
     >
       <Part title={<i className="font-serif">D</i>}>
-        <div className="flex flex-wrap items-start gap-x-8 gap-y-3">
+        <div className="flex flex-wrap items-start gap-x-8">
           <SpanFields
             key={cleared}
             name="D in square micrometres per second"
@@ -71,9 +71,7 @@ export function FilterForm({
             onChange={({ from, to }) => onChange({ dFrom: from, dTo: to }, 'range')}
             onLeave={onLeave}
           />
-          <div className="tab:pt-6">
-            <RangeModeChoice mode={filters.range} onChange={(range) => onChange({ range })} />
-          </div>
+          <RangeModeChoice mode={filters.range} onChange={(range) => onChange({ range })} />
         </div>
       </Part>
       <Part title="Verdict" className={folds}>
@@ -88,10 +86,10 @@ export function FilterForm({
           />
         </Part>
       ) : null}
-      <Part title="Day of the experiment" className={folds}>
+      <Part title="Experiment date" className={folds}>
         <SpanFields
           key={cleared}
-          name="day of the experiment"
+          name="experiment date"
           kind={ofDays}
           value={{ from: filters.dateFrom, to: filters.dateTo }}
           faults={{
@@ -102,7 +100,7 @@ export function FilterForm({
           onLeave={onLeave}
         />
       </Part>
-      <div className="flex flex-wrap gap-3 empty:hidden tab:pl-32">
+      <div className="flex flex-wrap gap-3 empty:hidden max-tab:pt-2 tab:pl-32">
         <Button
           size="small"
           className="tab:hidden"
@@ -134,7 +132,10 @@ function Part({ title, className, children }: { title: ReactNode; className?: st
   const id = useId();
   return (
     <div role="group" aria-labelledby={id} className={classes('tab:flex', className)}>
-      <p id={id} className="small w-32 shrink-0 pr-4 text-muted max-tab:mb-1 tab:pt-2">
+      <p
+        id={id}
+        className="small flex w-32 shrink-0 items-center self-start pr-4 text-muted max-tab:mb-1 tab:min-h-10 tab:max-desk:min-h-11 tab:pointer-coarse:min-h-11"
+      >
         {title}
       </p>
       <div className="min-w-0 grow">{children}</div>

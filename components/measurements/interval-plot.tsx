@@ -9,6 +9,9 @@ export interface AskedRange {
   readonly to: number | null;
 }
 
+/** The width that axis and plots share. */
+const across = 'absolute left-0 w-full min-[960px]:w-[calc(100%-1.25rem)]';
+
 /**
  * One measurement on the log axis that all rows share: an open circle at D, a line over its 95 % interval, an arrow where
  * the interval goes on beyond the axis. Drawn in percentages of the place it is given, so that nothing is stretched and
@@ -27,10 +30,19 @@ export function IntervalPlot({
     ? quantityText({ symbol: 'D', value: row.d.value, lo: row.d.lo, hi: row.d.hi, unit: 'µm²/s' })
     : 'no D to draw';
   return (
-    <svg role="img" aria-label={label} className="absolute inset-0 h-full w-full overflow-visible">
-      <Ground scale={scale} asked={asked} />
-      {row.d ? <Interval d={row.d} scale={scale} colour={`var(--${verdictColours[row.verdict]})`} /> : null}
-    </svg>
+    <>
+      <svg aria-hidden className={`inset-y-0 h-full ${across}`}>
+        <Ground scale={scale} asked={asked} />
+      </svg>
+      {/* Beside the number where the row is a line of a table, in the middle where it is folded. */}
+      <svg
+        role="img"
+        aria-label={label}
+        className={`inset-y-0 h-full overflow-visible min-[960px]:top-3 min-[960px]:h-5 ${across}`}
+      >
+        {row.d ? <Interval d={row.d} scale={scale} colour={`var(--${verdictColours[row.verdict]})`} /> : null}
+      </svg>
+    </>
   );
 }
 
@@ -108,20 +120,20 @@ function Ground({ scale, asked }: { scale: IntervalScale; asked: AskedRange }) {
   );
 }
 
-/** The axis itself, for the head of the ledger. */
-export function IntervalAxis({ scale, asked }: { scale: IntervalScale; asked: AskedRange }) {
+/** The axis itself, for the head of the ledger: what it measures, and a number at every tick. */
+export function IntervalAxis({ scale }: { scale: IntervalScale }) {
   return (
-    <svg aria-hidden className="absolute inset-0 h-full w-full overflow-visible">
-      <svg y="1.5rem" height="100%" width="100%" className="overflow-hidden">
-        <Ground scale={scale} asked={asked} />
-      </svg>
+    <svg aria-hidden className={`inset-y-0 h-full overflow-visible font-sans ${across}`}>
+      <text y="1.25rem" className="fill-muted text-label">
+        95 % interval, µm²/s
+      </text>
       {scale.ticks.map(({ value, label }) => (
         <text
           key={value}
           x={percent(placeOn(scale, value))}
-          y="1.125rem"
+          y="2.5rem"
           textAnchor="middle"
-          className="fill-muted text-fine"
+          className="fill-muted text-fine tabular-nums"
         >
           {label}
         </text>

@@ -56,7 +56,13 @@ export function LedgerRow({
             <Quantity value={row.d.value} lo={row.d.lo} hi={row.d.hi} unit="µm²/s" />
           ) : (
             <span className="text-muted">
-              {row.verdict === 'anomalous' ? 'no single D' : 'no motion resolved'}
+              {row.verdict === 'anomalous' ? (
+                <>
+                  no single <i className="font-serif">D</i>
+                </>
+              ) : (
+                'no motion resolved'
+              )}
             </span>
           )}
         </span>

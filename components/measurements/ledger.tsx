@@ -7,7 +7,7 @@ import { IntervalAxis, type AskedRange } from './interval-plot';
 import type { IntervalScale } from './interval-scale';
 import { LedgerRow } from './ledger-row';
 
-export const headCell = 'label py-2 pr-4 text-left align-bottom font-normal text-muted';
+const headCell = 'label py-2 align-bottom font-normal text-muted';
 
 /**
  * The ledger of measurements. Below 960 px each row folds into a few stacked lines and of the head only the axis stays;
@@ -41,10 +41,10 @@ export function Ledger({
     >
       <thead role="rowgroup" className="block min-[960px]:table-header-group">
         <tr role="row" className="block border-b min-[960px]:table-row">
-          <Head className="w-[5.5rem] max-[959px]:sr-only">Number</Head>
-          <Head className="max-[959px]:sr-only">Title and people</Head>
+          <Head className="w-19 pr-4 text-left max-[959px]:sr-only">Number</Head>
+          <Head className="pr-4 text-left max-[959px]:sr-only">Title and people</Head>
           <SortHead
-            className="w-28 max-[959px]:sr-only"
+            className="w-[6.75rem] pr-4 text-left max-[959px]:sr-only"
             sort={sort}
             up="date-asc"
             down="date-desc"
@@ -54,7 +54,7 @@ export function Ledger({
             Date
           </SortHead>
           <SortHead
-            className="w-52 max-[959px]:sr-only"
+            className="w-[12.25rem] pr-4 text-left max-[959px]:sr-only"
             sort={sort}
             up="d-asc"
             down="d-desc"
@@ -66,12 +66,12 @@ export function Ledger({
           <th
             role="columnheader"
             scope="col"
-            className="relative block h-7 min-[960px]:table-cell min-[960px]:w-52"
+            className="relative block h-12 font-normal min-[960px]:table-cell min-[960px]:w-44"
           >
-            <span className="sr-only">Interval on a log axis, in µm²/s</span>
-            {scale ? <IntervalAxis scale={scale} asked={asked} /> : null}
+            <span className="sr-only">95 % interval on a log axis, in µm²/s</span>
+            {scale ? <IntervalAxis scale={scale} /> : null}
           </th>
-          <Head className="w-20 pr-0 text-right max-[959px]:sr-only">Tracks</Head>
+          <Head className="w-16 text-right max-[959px]:sr-only">Tracks</Head>
         </tr>
       </thead>
       <tbody role="rowgroup" className="block min-[960px]:table-row-group">

@@ -13,10 +13,10 @@ import { someOfBounded } from './words';
 export function LoadingRows() {
   return (
     <div className="border-b">
-      <p role="status" className="sr-only">
-        The measurements are being looked up.
+      <p role="status" className="small h-11 text-muted min-[960px]:h-6">
+        Looking …
       </p>
-      <div aria-hidden className="h-7 border-b" />
+      <div aria-hidden className="h-14 border-b" />
       {Array.from({ length: 8 }, (_, row) => (
         <div key={row} className="h-[4.25rem] border-b px-1 py-2 last:border-b-0 max-[959px]:h-[8.25rem]">
           <Skeleton lines={2} />
@@ -93,9 +93,11 @@ export function NoMatch({
       }
     >
       No measurement that you may read meets all of this.{' '}
-      {helpful.length > 0
-        ? 'Each of these changes alone would find some:'
-        : 'Dropping one filter alone does not help; clear all of them and start again.'}
+      {helpful.length === 1
+        ? 'One change would find some:'
+        : helpful.length > 1
+          ? 'Each of these changes alone would find some:'
+          : 'Dropping one filter alone does not help; clear all of them and start again.'}
       {byInside ? ' Or ask for intervals that overlap the range instead of values inside it.' : null}
     </EmptyPlace>
   );

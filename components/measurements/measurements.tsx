@@ -70,8 +70,9 @@ function Answer({
     ...rows.flatMap(({ d }) => (d ? [d.value, d.lo, d.hi] : [])),
   ]);
   return (
-    <section aria-label="Answer" className="mt-6">
-      <div className="flex flex-wrap items-end justify-between gap-x-8 gap-y-3 pb-2">
+    // An empty place has rules of its own: its first one falls on the last one of the form.
+    <section aria-label="Answer" className={isEmpty && !failed ? '-mt-px' : 'mt-6'}>
+      <div className={isEmpty ? 'sr-only' : 'flex flex-wrap items-end justify-between gap-x-4 gap-y-2 pb-2'}>
         <SummaryLine summary={summary} isWaiting={list.isPlaceholderData} />
         {isEmpty ? null : <SortChoice sort={filters.sort} onSort={(sort) => onChange({ sort })} />}
       </div>

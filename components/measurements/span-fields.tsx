@@ -1,8 +1,8 @@
 'use client';
 
-import { useEffect, useRef, useState, type ReactNode } from 'react';
+import { useEffect, useId, useRef, useState, type ReactNode } from 'react';
 import type { z } from 'zod';
-import { Field } from '@/components/ui/field';
+import { classes } from '@/components/ui/classes';
 import { Input } from '@/components/ui/input';
 import { isReversed, type UrlFault } from './filters-in-url';
 
@@ -51,14 +51,19 @@ export function SpanFields<T extends number | string>({
 }) {
   const [fields, setFields] = useState(() => fieldsOf(value, faults, kind));
   const [seen, setSeen] = useState(value);
-  if (seen.from !== value.from || seen.to !== value.to) {
+  const moved = ENDS.filter((end) => seen[end] !== value[end]);
+  if (moved.length > 0) {
     setSeen(value);
-    // Changed from elsewhere (back button, "clear"): show it. What was typed here and means the same stays as typed.
-    const meant = read(fields, kind);
-    if (meant.span?.from !== value.from || meant.span.to !== value.to)
-      setFields(fieldsOf(value, faults, kind));
+    // Changed from elsewhere (back button, "clear"): show it. What was typed here and means the same stays as typed, and
+    // so does the other end, where somebody may be typing at this moment.
+    const stale = moved.filter((end) => readOne(fields[end], kind).value !== value[end]);
+    if (stale.length > 0) {
+      const fresh = fieldsOf(value, faults, kind);
+      setFields({ ...fields, ...Object.fromEntries(stale.map((end) => [end, fresh[end]])) });
+    }
   }
 
+  const id = useId();
   const pause = useRef<ReturnType<typeof setTimeout> | undefined>(undefined);
   useEffect(() => () => clearTimeout(pause.current), []);
   const settle = (typed: Fields) => {
@@ -75,40 +80,52 @@ export function SpanFields<T extends number | string>({
   };
 
   return (
-    <div className="flex flex-wrap items-start gap-x-4 gap-y-2">
-      {ENDS.map((end) => (
-        <Field
-          key={end}
-          className={kind.type === 'date' ? 'w-40 max-tab:grow' : 'w-32 max-tab:grow'}
-          label={
-            <>
+    <div>
+      <div className="small flex flex-wrap items-center gap-x-3 gap-y-2">
+        {ENDS.map((end) => (
+          <div key={end} className="flex items-center gap-3">
+            <label
+              htmlFor={`${id}-${end}`}
+              className={classes('text-muted', kind.type === 'date' && 'max-tab:w-9')}
+            >
               {end}
               <span className="sr-only">, {name}</span>
-            </>
-          }
-          error={fields[end].error}
+            </label>
+            <span className={kind.type === 'date' ? 'w-38' : 'w-24'}>
+              <Input
+                id={`${id}-${end}`}
+                aria-describedby={fields[end].error ? `${id}-${end}-error` : undefined}
+                aria-invalid={fields[end].error ? true : undefined}
+                type={kind.type}
+                {...(kind.type === 'text' ? { inputMode: 'decimal' as const, spellCheck: false } : {})}
+                autoComplete="off"
+                className="tabular-nums"
+                value={fields[end].text}
+                onChange={({ target }) => type(end, target.value, target.validity.badInput)}
+                onBlur={() => {
+                  settle(fields);
+                  onLeave();
+                }}
+                onKeyDown={({ key }) => {
+                  if (key === 'Enter') settle(fields);
+                }}
+              />
+            </span>
+          </div>
+        ))}
+        {unit ? <span className="text-muted">{unit}</span> : null}
+      </div>
+      {/* Under both fields, where a sentence has room; always there, so that it is read aloud when it is filled. */}
+      {ENDS.map((end) => (
+        <p
+          key={end}
+          id={`${id}-${end}-error`}
+          role="alert"
+          className={fields[end].error ? 'label mt-1 text-madder' : 'sr-only'}
         >
-          {(control) => (
-            <Input
-              {...control}
-              type={kind.type}
-              {...(kind.type === 'text' ? { inputMode: 'decimal' as const, spellCheck: false } : {})}
-              autoComplete="off"
-              className="tabular-nums"
-              value={fields[end].text}
-              onChange={({ target }) => type(end, target.value, target.validity.badInput)}
-              onBlur={() => {
-                settle(fields);
-                onLeave();
-              }}
-              onKeyDown={({ key }) => {
-                if (key === 'Enter') settle(fields);
-              }}
-            />
-          )}
-        </Field>
+          {fields[end].error ? `Not applied, “${end}”: ${fields[end].error}` : null}
+        </p>
       ))}
-      {unit ? <span className="label pt-8 text-muted max-tab:pt-9">{unit}</span> : null}
     </div>
   );
 }
@@ -133,22 +150,28 @@ function fieldsOf<T>(value: Span<T>, faults: Partial<Record<End, UrlFault>>, kin
   return { from: field('from'), to: field('to') };
 }
 
+/** One field as a value, or what is wrong with it. Empty asks for nothing. */
+function readOne<T extends number | string>(
+  { text, unreadable }: FieldState,
+  kind: SpanKind<T>,
+): { value: T | null; error?: string } {
+  if (unreadable) return { value: null, error: kind.incomplete };
+  if (text.trim() === '') return { value: null };
+  const parsed = kind.shape.safeParse(text);
+  if (parsed.success) return { value: parsed.data };
+  return { value: null, error: parsed.error.issues[0]?.message ?? kind.incomplete };
+}
+
 /** Both fields as values, or what is wrong with them: then the span as a whole is not used. */
 function read<T extends number | string>(
   fields: Fields,
   kind: SpanKind<T>,
 ): { span: Span<T> | null; errors: Partial<Record<End, string>> } {
+  const [from, to] = [readOne(fields.from, kind), readOne(fields.to, kind)];
   const errors: Partial<Record<End, string>> = {};
-  const one = (end: End): T | null => {
-    const { text, unreadable } = fields[end];
-    if (unreadable) errors[end] = kind.incomplete;
-    if (text.trim() === '') return null;
-    const parsed = kind.shape.safeParse(text);
-    if (parsed.success) return parsed.data;
-    errors[end] = parsed.error.issues[0]?.message ?? kind.incomplete;
-    return null;
-  };
-  const span = { from: one('from'), to: one('to') };
-  if (isReversed(span.from, span.to)) errors.to = kind.reversed;
-  return { span: Object.keys(errors).length === 0 ? span : null, errors };
+  if (from.error) errors.from = from.error;
+  if (to.error) errors.to = to.error;
+  if (isReversed(from.value, to.value)) errors.to = kind.reversed;
+  const isRight = Object.keys(errors).length === 0;
+  return { span: isRight ? { from: from.value, to: to.value } : null, errors };
 }

@@ -18,7 +18,7 @@ export function SummaryLine({
       ) : summary && summary.total.count > 0 ? (
         capital(someOfBounded(summary.total, 'measurement'))
       ) : summary ? (
-        <span className="sr-only">No measurement</span>
+        'No measurement'
       ) : null}
     </p>
   );

@@ -1,7 +1,7 @@
 'use client';
 
 import { useSearchParams } from 'next/navigation';
-import { useCallback, useEffect, useMemo, useRef } from 'react';
+import { useCallback, useEffect, useMemo, useRef, useState } from 'react';
 import type { MeasurementFilters } from '@/db/inputs/measurement';
 import { readFilters, writeFilters, type UrlFaults } from './filters-in-url';
 
@@ -18,8 +18,16 @@ export function useFilters(): {
   change: (change: FilterChange, typing?: string) => void;
   endTyping: () => void;
 } {
-  const params = useSearchParams();
-  const { filters, faults } = useMemo(() => readFilters(new URLSearchParams(params)), [params]);
+  const told = useSearchParams().toString();
+  // The router tells of a new address a little later. Until then a box that was just ticked must not fall back, and a
+  // second one must build on the first: the address as it was written here holds at once.
+  const [heard, setHeard] = useState(told);
+  const [query, setQuery] = useState(told);
+  if (heard !== told) {
+    setHeard(told);
+    setQuery(queryOfAddress());
+  }
+  const { filters, faults } = useMemo(() => readFilters(new URLSearchParams(query)), [query]);
   const typedLast = useRef<string | null>(null);
   const endTyping = useCallback(() => {
     typedLast.current = null;
@@ -30,10 +38,11 @@ export function useFilters(): {
   }, [endTyping]);
   const change = useCallback((changed: FilterChange, typing?: string) => {
     // From the address, not from the last drawing: two fields may change between two drawings.
-    const now = readFilters(new URLSearchParams(window.location.search)).filters;
-    const query = writeFilters({ ...now, ...changed }).toString();
-    if (query === window.location.search.slice(1)) return;
-    const address = window.location.pathname + (query === '' ? '' : `?${query}`);
+    const now = readFilters(new URLSearchParams(queryOfAddress())).filters;
+    const next = writeFilters({ ...now, ...changed }).toString();
+    if (next === queryOfAddress()) return;
+    setQuery(next);
+    const address = window.location.pathname + (next === '' ? '' : `?${next}`);
     const goesOn = typing !== undefined && typing === typedLast.current;
     typedLast.current = typing ?? null;
     if (goesOn) window.history.replaceState(null, '', address);
@@ -41,3 +50,5 @@ export function useFilters(): {
   }, []);
   return { filters, faults, change, endTyping };
 }
+
+const queryOfAddress = (): string => window.location.search.slice(1);

@@ -2,10 +2,11 @@ import { notFound } from 'next/navigation';
 import { getCurrentActor } from '@/app/_server/actor';
 import { Measurements } from '@/components/measurements/measurements';
 import { QueryProvider } from '@/components/query-provider';
-import { Place, PlaceHeading } from '@/components/shell/place';
+import { Place } from '@/components/shell/place';
 import { db } from '@/db/client';
 import { may } from '@/db/policies/may';
 import { listNotebookChoices } from '@/db/queries/measurement/list-notebook-choices';
+import { MeasurementsHeading } from './_parts/heading';
 
 export const metadata = { title: 'Measurements' };
 
@@ -15,7 +16,7 @@ export default async function MeasurementsPage() {
   const notebooks = await listNotebookChoices(db(), actor);
   return (
     <Place>
-      <PlaceHeading title="Measurements" note="Every D of the notebooks that you may read." />
+      <MeasurementsHeading />
       <div className="mt-8">
         <QueryProvider>
           <Measurements notebooks={notebooks} mayWrite={actor.role !== 'guest'} />

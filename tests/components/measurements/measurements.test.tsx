@@ -50,6 +50,8 @@ const page = (rows: MeasurementRow[], given: Partial<MeasurementPage> = {}): Mea
 let root: Root;
 let home: HTMLElement;
 const asked: string[] = [];
+/** How long the page takes to hear of its new address, milliseconds. */
+let addressDelay = 0;
 let answer: (query: string) => { status?: number; body: unknown } | Error;
 
 beforeEach(async () => {
@@ -65,13 +67,15 @@ beforeEach(async () => {
     const real = window.history[step].bind(window.history);
     vi.spyOn(window.history, step).mockImplementation((...given) => {
       real(...given);
-      window.dispatchEvent(new Event('address'));
+      if (addressDelay === 0) window.dispatchEvent(new Event('address'));
+      else setTimeout(() => window.dispatchEvent(new Event('address')), addressDelay);
     });
   }
   (window as unknown as { happyDOM: { setURL(url: string): void } }).happyDOM.setURL(
     'http://127.0.0.1/measurements',
   );
   asked.length = 0;
+  addressDelay = 0;
   answer = () => ({ body: page([row(1), row(2)]) });
   home = document.body.appendChild(document.createElement('div'));
   root = createRoot(home);
@@ -191,6 +195,21 @@ describe('asking for a range of D', () => {
     expect(vi.mocked(window.history.pushState).mock.calls.length - before).toBe(1);
   });
 
+  test('what is typed in one field is not lost when the other one is applied meanwhile', async () => {
+    await open();
+    addressDelay = 100;
+    await type(field(FROM), '0.45');
+    await act(async () => void field(FROM).dispatchEvent(new Event('focusout', { bubbles: true })));
+    await type(field(TO), '0');
+    await pass(150);
+    expect(window.location.search).toBe('?dFrom=0.45');
+    expect(field(TO).value).toBe('0');
+    await type(field(TO), '0.52');
+    await pass(700);
+    expect(window.location.search).toBe('?dFrom=0.45&dTo=0.52');
+    expect([field(FROM).value, field(TO).value]).toEqual(['0.45', '0.52']);
+  });
+
   test('keeps what was typed, also its zeros', async () => {
     await open();
     await type(field(TO), '0.60');
@@ -207,7 +226,7 @@ describe('asking for a range of D', () => {
     await open('?dTo=2');
     await type(field(FROM), text);
     await pass(500);
-    expect(errorOf(field(FROM))).toBe(message);
+    expect(errorOf(field(FROM))).toBe(`Not applied, “from”: ${message}`);
     expect(field(FROM).getAttribute('aria-invalid')).toBe('true');
     expect(field(FROM).value).toBe(text);
     expect(window.location.search).toBe('?dTo=2');
@@ -221,7 +240,7 @@ describe('asking for a range of D', () => {
     await open('?dFrom=0.6');
     await type(field(TO), '0.3');
     await pass(500);
-    expect(errorOf(field(TO))).toBe('The upper bound is below the lower one.');
+    expect(errorOf(field(TO))).toBe('Not applied, “to”: The upper bound is below the lower one.');
     await type(field(FROM), '0.2');
     await pass(500);
     expect(field(TO).getAttribute('aria-invalid')).toBeNull();
@@ -242,7 +261,7 @@ describe('asking for a range of D', () => {
   test('an address that somebody wrote wrongly shows in the field what it says, and why it is not used', async () => {
     await open('?dFrom=many&verdict=free');
     expect(field(FROM).value).toBe('many');
-    expect(errorOf(field(FROM))).toBe('Enter a number in µm²/s, such as 0.43 or 2e-3.');
+    expect(errorOf(field(FROM))).toContain('Enter a number in µm²/s, such as 0.43 or 2e-3.');
     expect(asked).toEqual(['verdict=free']);
     await press(/^Clear all filters$/);
     expect(field(FROM).value).toBe('');
@@ -263,6 +282,18 @@ describe('choosing', () => {
       notebook: NOTEBOOKS[1]!.id,
     });
     expect(vi.mocked(window.history.pushState).mock.calls.length - before).toBe(4);
+  });
+
+  test('two boxes ticked before the page hears of its address both count', async () => {
+    await open();
+    addressDelay = 100;
+    for (const name of [/^free$/, /^confined$/]) {
+      await act(async () => field(name).click());
+      expect(field(name).checked).toBe(true);
+    }
+    await pass(300);
+    expect(window.location.search).toBe('?verdict=free%2Cconfined');
+    expect([field(/^free$/).checked, field(/^confined$/).checked]).toEqual([true, true]);
   });
 
   test('a notebook of the address that one may not read can be left out', async () => {
