@@ -76,21 +76,31 @@ function forLogAxis(rows: readonly MsdRow[]): MsdRow[] {
 function key(own: string): Layer[] {
   const at = (x: number, y: number) => ({ x: { value: x }, y: { value: y } });
   const text = (words: string, y: number): Layer => ({
-    mark: { type: 'text', text: words, align: 'left', baseline: 'middle', color: colour('muted') },
+    mark: {
+      type: 'text',
+      text: words,
+      align: 'left',
+      baseline: 'middle',
+      color: colour('muted'),
+      aria: false,
+    },
     encoding: at(38, y),
   });
   const layers: Layer[] = [
     {
-      mark: { type: 'rule', color: colour('muted') },
+      mark: { type: 'rule', color: colour('muted'), aria: false },
       encoding: { ...at(20, 3), y2: { value: 17 } },
     },
-    { mark: { type: 'point', color: colour('ink') }, encoding: at(20, 10) },
+    { mark: { type: 'point', color: colour('ink'), aria: false }, encoding: at(20, 10) },
     text('measured, with 95 % intervals', 10),
     {
-      mark: { type: 'rect', color: own, opacity: chartConfig.area?.opacity as number },
+      mark: { type: 'rect', color: own, opacity: chartConfig.area?.opacity as number, aria: false },
       encoding: { ...at(10, 23), x2: { value: 30 }, y2: { value: 33 } },
     },
-    { mark: { type: 'rule', color: own, strokeWidth: 1.5 }, encoding: { ...at(10, 28), x2: { value: 30 } } },
+    {
+      mark: { type: 'rule', color: own, strokeWidth: 1.5, aria: false },
+      encoding: { ...at(10, 28), x2: { value: 30 } },
+    },
     text('fit, with the 95 % band of D', 28),
   ];
   return layers.map((layer) => ({ ...layer, data: { values: [{}] } }));

@@ -3,6 +3,7 @@
 import { Button } from '@/components/ui/button';
 import { Field } from '@/components/ui/field';
 import { Select } from '@/components/ui/select';
+import { VisuallyHidden } from '@/components/ui/visually-hidden';
 import { MAX_READINGS_PER_BLOCK, type BlockAttributes } from '@/db/inputs/block-settings';
 import type { BlockNow } from './blocks-context';
 
@@ -35,13 +36,11 @@ export function FilesField({
                 {known ? known.name : <span className="text-madder">▲ not a file of this entry</span>}
               </span>
               {editable ? (
-                <Button
-                  size="small"
-                  weight="quiet"
-                  aria-label={`Take ${known?.name ?? 'this file'} out of the block`}
-                  onClick={() => takeOut(at)}
-                >
-                  Take out
+                <Button size="small" weight="quiet" onClick={() => takeOut(at)}>
+                  <span>
+                    Take out
+                    <VisuallyHidden> of the block: {known?.name ?? 'this file'}</VisuallyHidden>
+                  </span>
                 </Button>
               ) : null}
             </li>

@@ -16,7 +16,7 @@ export function MsdTable({ result, summary }: { result: AnalysisResult; summary:
       <div
         className="mt-2 max-h-72 overflow-auto"
         tabIndex={0}
-        role="region"
+        role="group"
         aria-label="Table of the MSD curve"
       >
         <table className="w-full text-right tabular-nums">

@@ -22,7 +22,7 @@ export function Provenance({
       {block.readings.map((reading) => (
         <div key={reading.id} className="flex flex-wrap items-baseline gap-x-3">
           <a
-            className="link inline-flex items-center break-all max-desk:min-h-11 pointer-coarse:min-h-11 print:min-h-0!"
+            className="link inline-flex min-h-7 items-center break-all max-desk:min-h-11 pointer-coarse:min-h-11 print:min-h-0!"
             href={`/api/attachments/${reading.attachmentId}`}
             download={reading.name}
           >
@@ -47,7 +47,7 @@ function Hash({ sha256 }: { sha256: string }) {
   return (
     <>
       <details className="min-w-0 open:basis-full print:hidden">
-        <summary className="inline-flex items-center hover:text-ink max-desk:min-h-11 pointer-coarse:min-h-11">
+        <summary className="inline-flex min-h-7 items-center hover:text-ink max-desk:min-h-11 pointer-coarse:min-h-11">
           SHA-256 {sha256.slice(0, 12)}…
         </summary>
         <code className="block break-all">{sha256}</code>

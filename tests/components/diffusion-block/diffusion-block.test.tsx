@@ -137,7 +137,7 @@ describe('without a result', () => {
     page = await mount(lost, answerOf([stateOf(lost, { status: 'failed', message: 'Not of this entry.' })]));
     await page.click('Settings');
     expect(page.text()).toContain('not a file of this entry');
-    await page.click('Take this file out');
+    await page.click('Take out of the block: this file');
     expect(page.written).toEqual([{ readingIds: [id(101)] }]);
   });
 

@@ -130,7 +130,7 @@ describe('a reader', () => {
     expect(controls.length).toBeGreaterThan(8);
     expect(controls.every((one) => one.disabled)).toBe(true);
     expect(() => page.button('Remove this block')).toThrow();
-    expect(() => page.button('Take')).toThrow();
+    expect(() => page.button('Take out')).toThrow();
     expect(page.text()).toContain('Beads');
   });
 });
