@@ -9,7 +9,8 @@ import { IntervalPlot, type AskedRange } from './interval-plot';
 import type { IntervalScale } from './interval-scale';
 import { someOf } from './words';
 
-const cell = 'label min-[960px]:py-3 min-[960px]:pr-4 min-[960px]:align-baseline';
+const bare = 'label min-[960px]:py-3 min-[960px]:align-baseline';
+const cell = `${bare} min-[960px]:pr-4`;
 
 /** One measurement; the whole row leads to its block in the entry. */
 export function LedgerRow({
@@ -78,7 +79,7 @@ export function LedgerRow({
       </td>
       <td
         role="cell"
-        className={`${cell} whitespace-nowrap text-right max-[959px]:order-3 max-[959px]:mt-1.5 max-[959px]:text-muted min-[960px]:pr-0`}
+        className={`${bare} whitespace-nowrap text-right max-[959px]:order-3 max-[959px]:mt-1.5 max-[959px]:text-muted`}
       >
         {row.tracks === null ? (
           <span className="text-muted">not stated</span>

@@ -27,7 +27,15 @@ export function LoadingRows() {
 }
 
 /** Nothing was measured yet in any notebook that one may read. */
-export function NothingYet({ mayWrite }: { mayWrite: boolean }) {
+export function NothingYet({ mayWrite, belongs }: { mayWrite: boolean; belongs: boolean }) {
+  if (!belongs) {
+    return (
+      <EmptyPlace>
+        Every D of your notebooks will stand here. You belong to none yet; the PI or an owner of a notebook
+        can add you.
+      </EmptyPlace>
+    );
+  }
   if (!mayWrite) {
     return (
       <EmptyPlace>
@@ -40,7 +48,7 @@ export function NothingYet({ mayWrite }: { mayWrite: boolean }) {
     <EmptyPlace
       step={
         <Link href="/" className={buttonClasses('primary')}>
-          Go to today’s entry
+          Go to Today
         </Link>
       }
     >

@@ -32,7 +32,13 @@ export function Measurements({
         onChange={change}
         onLeave={endTyping}
       />
-      <Answer list={list} filters={filters} onChange={change} mayWrite={mayWrite} />
+      <Answer
+        list={list}
+        filters={filters}
+        onChange={change}
+        mayWrite={mayWrite}
+        belongs={notebooks.length > 0}
+      />
     </>
   );
 }
@@ -42,11 +48,14 @@ function Answer({
   filters,
   onChange,
   mayWrite,
+  belongs,
 }: {
   list: MeasurementList;
   filters: MeasurementFilters;
   onChange: (change: FilterChange) => void;
   mayWrite: boolean;
+  /** Whether there is any notebook that one may read. */
+  belongs: boolean;
 }) {
   const { data, error } = list;
   const isRetrying = list.isFetching && !list.isFetchingNextPage;
@@ -89,7 +98,7 @@ function Answer({
       ) : countRestrictions(filters) > 0 && summary ? (
         <NoMatch summary={summary} isOverlap={filters.range === 'overlaps'} onChange={onChange} />
       ) : (
-        <NothingYet mayWrite={mayWrite} />
+        <NothingYet mayWrite={mayWrite} belongs={belongs} />
       )}
       {list.hasNextPage && !list.isPlaceholderData ? (
         <Button className="mt-5" busy={list.isFetchingNextPage} onClick={() => void list.fetchNextPage()}>
