@@ -27,13 +27,24 @@ export async function findWaiting(db: Database): Promise<string[]> {
   return rows.map((row) => row.id);
 }
 
-/** Drafts that still show a result of another engine: asked once, when a new engine starts. Signed entries keep theirs. */
-export async function findOfOtherEngines(db: Database): Promise<string[]> {
+/**
+ * Drafts whose questions are to be asked anew, once, when a projector starts: those that show a result of another engine,
+ * and those that were given up for what had happened on the server. Signed entries keep what they were signed with.
+ */
+export async function findToAskAnew(db: Database): Promise<string[]> {
   const rows = await db
     .selectDistinct({ id: blockResult.entryId })
     .from(blockResult)
-    .innerJoin(result, eq(result.address, blockResult.address))
     .innerJoin(entry, eq(entry.id, blockResult.entryId))
-    .where(and(eq(entry.state, 'draft'), ne(result.engine, ENGINE_VERSION)));
+    .leftJoin(result, eq(result.address, blockResult.address))
+    .where(
+      and(
+        eq(entry.state, 'draft'),
+        or(
+          ne(result.engine, ENGINE_VERSION),
+          and(eq(blockResult.status, 'failed'), isNull(blockResult.address)),
+        ),
+      ),
+    );
   return rows.map((row) => row.id);
 }

@@ -8,7 +8,7 @@ import { AnalysisWorker } from '../../db/worker/analysis-worker';
 import { newAnalysisThread } from '../../db/worker/new-thread';
 import { Listener } from '../listener';
 import { DueEntries } from './due-entries';
-import { findBehind, findOfOtherEngines, findWaiting } from './find-due';
+import { findBehind, findToAskAnew, findWaiting } from './find-due';
 import { readDocument } from './read-document';
 import { ResultQueue } from './result-queue';
 import { keepSnapshotWhenDue } from './snapshot';
@@ -71,7 +71,7 @@ class Projector implements RunningProjector {
 
   async start(): Promise<void> {
     await this.listener.start();
-    for (const entryId of await findOfOtherEngines(this.db)) this.mark(entryId);
+    for (const entryId of await findToAskAnew(this.db)) this.mark(entryId);
     await this.scan();
     this.scanning = setInterval(() => void this.scan(), SCAN_MS);
   }

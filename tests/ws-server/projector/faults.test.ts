@@ -67,6 +67,28 @@ describe('the database and the projector', () => {
   });
 });
 
+describe('an engine that is new', () => {
+  test('is asked for the blocks of drafts when it starts; the results of the old one stay', async () => {
+    const projector = await world.start();
+    const { entryId } = await entryWithBlock();
+    await world.wait(entryId, 'done');
+    await projector.stop();
+    const [before] = await world.blocks(entryId);
+    // As an older engine would have left it: the same outcome, at another address.
+    const address = 'e'.repeat(64);
+    await world.db.execute(sql`
+      INSERT INTO result (address, engine, outcome, milliseconds)
+      SELECT ${address}, 'motebook-engine/0', outcome, milliseconds FROM result WHERE address = ${before!.address}`);
+    await world.db.execute(sql`UPDATE block_result SET address = ${address} WHERE entry_id = ${entryId}`);
+    await world.start();
+    await until('the new engine answered', async () => {
+      const [now] = await world.blocks(entryId);
+      return now?.address === before!.address;
+    });
+    expect(await world.results()).toBe(2);
+  });
+});
+
 describe('files', () => {
   test('while the file service is away the block waits and says so; then it is computed by itself', async () => {
     let away = true;
@@ -136,6 +158,17 @@ describe('the worker', () => {
     broken = false;
     const [row] = await world.blocks(entryId);
     await world.set(entryId, row!.blockId, 'minTrackFrames', 3);
+    await world.wait(entryId, 'done');
+  });
+
+  test('the next start asks again what was given up', async () => {
+    const projector = await world.start({
+      worker: new AnalysisWorker({ create: thread('for (;;) {}'), limitMs: 200 }),
+    });
+    const { entryId } = await entryWithBlock();
+    await world.wait(entryId, 'failed');
+    await projector.stop();
+    await world.start();
     await world.wait(entryId, 'done');
   });
 
