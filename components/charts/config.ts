@@ -14,6 +14,13 @@ const TITLE = 12;
 /** Measured by the chart before it is drawn, so it must be a real name and not a variable. */
 const FONT = fontStacks.sans.map((name) => (name.includes(' ') ? `"${name}"` : name)).join(', ');
 
+/** Vega's expression for a number on an axis: 1500 and 0.002 in full, 2e−5 and 4e6 short. */
+export const AXIS_NUMBER =
+  "datum.value == 0 || (abs(datum.value) >= 0.001 && abs(datum.value) < 1e5) ? format(datum.value, '~r') : replace(replace(format(datum.value, '~e'), '-', '\u2212'), '+', '')";
+
+/** The same on a logarithmic axis, where only 1, 2 and 5 of each decade are named. */
+export const LOG_AXIS_NUMBER = `indexof([1, 2, 5], round(datum.value / pow(10, floor(log(datum.value) / LN10 + 1e-9)))) < 0 ? '' : (${AXIS_NUMBER})`;
+
 /** The one look of all charts: hairline axes, few ticks, no grid, open circles, thin fits with a pale band. */
 export const chartConfig: Config = {
   background: 'transparent',

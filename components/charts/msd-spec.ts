@@ -1,7 +1,7 @@
 import type { TopLevelSpec } from 'vega-lite';
 import type { AnalysisResult } from '@/analysis/types';
 import { verdictColours } from '@/components/ui/verdict-curves';
-import { chartConfig, colour } from './config';
+import { AXIS_NUMBER, LOG_AXIS_NUMBER, chartConfig, colour } from './config';
 import { msdRows, type MsdRow } from './msd-rows';
 
 type Layer = Extract<TopLevelSpec, { layer: unknown }>['layer'][number];
@@ -19,13 +19,21 @@ export function msdSpec(result: AnalysisResult, scale: MsdScale): TopLevelSpec {
   const all = result.msd ? msdRows(result.msd) : [];
   const rows = scale === 'log' ? forLogAxis(thin(all)) : thin(all);
   const own = colour(verdictColours[result.verdict]);
-  const axis = { scale: scaleOf(scale), axis: { format: '~g' } };
-  const x = { field: 'tau', type: 'quantitative' as const, title: 'lag time τ (s)', ...axis };
+  const taus = rows.map((row) => row.tau);
+  const squares = rows.flatMap((row) => [row.low, row.high, row.fitHigh]);
+  const x = {
+    field: 'tau',
+    type: 'quantitative' as const,
+    title: 'lag time τ (s)',
+    scale: scaleOf(scale),
+    axis: { labelExpr: axisNumbers(scale, taus) },
+  };
   const y = (field: keyof MsdRow) => ({
     field,
     type: 'quantitative' as const,
     title: 'MSD (µm²)',
-    ...axis,
+    scale: scaleOf(scale),
+    axis: { labelExpr: axisNumbers(scale, squares) },
   });
   return {
     $schema: 'https://vega.github.io/schema/vega-lite/v6.json',
@@ -56,6 +64,12 @@ function scaleOf(scale: MsdScale) {
   return scale === 'log'
     ? { type: 'log' as const, nice: false }
     : { type: 'linear' as const, zero: true, nice: true };
+}
+
+/** On a logarithmic axis too short to hold several of 1, 2 and 5, every tick is named. */
+function axisNumbers(scale: MsdScale, values: readonly number[]): string {
+  const span = Math.max(...values) / Math.min(...values);
+  return scale === 'log' && span >= 8 ? LOG_AXIS_NUMBER : AXIS_NUMBER;
 }
 
 /** What is zero or less has no place on a logarithmic axis; an interval down to zero ends at a quarter of the least point. */

@@ -97,6 +97,27 @@ describe('the drawing', () => {
     expect(points(svg)).toBe(msd.lag.length - 1);
   });
 
+  test('writes numbers on its axes in full where they are read best so', async () => {
+    const axisNumbers = async (factor: number) => {
+      const times = (values: readonly number[]) => values.map((value) => value * factor);
+      const { total, se, model, modelLo, modelHi, ...rest } = free.msd!;
+      const msd = {
+        ...rest,
+        total: times(total),
+        se: times(se),
+        model: times(model),
+        modelLo: times(modelLo),
+        modelHi: times(modelHi),
+      };
+      const svg = await draw({ ...free, msd }, 'linear');
+      return [...svg.matchAll(/<text[^>]*>([^<]*)<\/text>/g)].map(([, text]) => text!);
+    };
+    const inThousands = await axisNumbers(500);
+    expect(inThousands).toContain('1000');
+    expect(inThousands.join(' ')).not.toMatch(/\de/);
+    expect((await axisNumbers(1e-5)).join(' ')).toMatch(/\de−5/);
+  });
+
   test('takes every colour from the theme and writes nothing smaller than 11 px', async () => {
     const svg = await draw(free, 'linear');
     const colours = new Set([...svg.matchAll(/(?:fill|stroke)="([^"]+)"/g)].map(([, value]) => value!));
