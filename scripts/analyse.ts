@@ -1,19 +1,19 @@
 import { createHash } from 'node:crypto';
-import { readFileSync } from 'node:fs';
+import { readFileSync, statSync } from 'node:fs';
+import path from 'node:path';
 import { analyse } from '../analysis/analyse';
-import { applyStated } from '../analysis/intake/apply-stated';
-import { inspectFile } from '../analysis/intake/inspect-file';
-import { readTrajectories } from '../analysis/intake/read-trajectories';
-import type { AnalysisResult } from '../analysis/types';
+import { tooBig } from '../analysis/intake/decode';
+import { describeReading } from '../analysis/intake/describe';
+import { MAX_BYTES } from '../analysis/intake/limits';
+import type { ReadOutcome } from '../analysis/intake/read-trajectories';
+import { takeIn } from '../analysis/intake/take-in';
+import type { Inspection, Missing } from '../analysis/intake/types';
 import { readingHash } from '../db/integrity/addresses';
 import { CommandError, readOptions, USAGE, type Options } from './analyse-options';
+import { forPeople, toJson, type FileOutcome, type Remark } from './analyse-output';
 
-/** The same analysis as on the page, for scripts: one JSON object a file, or a line for people. */
-function main(args: string[]): number {
-  if (args.includes('--help')) {
-    console.log(USAGE);
-    return 0;
-  }
+/** The same analysis as on the page, for scripts: one JSON object a file, or a table for people. */
+function main(args: readonly string[]): number {
   let options: Options;
   try {
     options = readOptions(args);
@@ -22,11 +22,19 @@ function main(args: string[]): number {
     console.error(`${error.message}\n\n${USAGE}`);
     return 2;
   }
+  if (options.help) {
+    console.log(USAGE);
+    return 0;
+  }
   let code = 0;
+  const outcomes: FileOutcome[] = [];
   for (const file of options.files) {
     try {
-      const result = analyseFile(file, options);
-      console.log(options.json ? JSON.stringify(toJson(file, result)) : forPeople(file, result));
+      const outcome = analyseFile(file, options);
+      outcomes.push(outcome);
+      if (!options.json) continue;
+      console.log(toJson(outcome));
+      for (const { message } of outcome.remarks) if (message !== null) console.error(`${file}: ${message}`);
     } catch (error) {
       if (!(error instanceof CommandError)) throw error;
       code = 2;
@@ -35,73 +43,88 @@ function main(args: string[]): number {
         console.log(JSON.stringify({ file, error: error.message }));
     }
   }
+  if (!options.json && outcomes.length > 0) console.log(forPeople(outcomes));
   return code;
 }
 
 /** @throws CommandError with the reason when the file cannot be read or analysed. */
-function analyseFile(file: string, options: Options): AnalysisResult {
-  let bytes: Buffer;
-  try {
-    bytes = readFileSync(file);
-  } catch (error) {
-    throw new CommandError(
-      `cannot be read (${(error as NodeJS.ErrnoException).code ?? 'unknown'}). Check the name.`,
-    );
-  }
-  const inspected = inspectFile(bytes, file);
-  if (inspected.failed) throw new CommandError(inspected.message);
-  const inspection = applyStated(inspected, options.stated);
-  if (inspection.required.includes('frameInterval')) {
-    throw new CommandError(
-      'the file counts frames; state the time between them with --frame-interval SECONDS.',
-    );
-  }
-  if (inspection.required.includes('pixelSize')) {
-    throw new CommandError('positions are in pixels; state the size of one with --pixel-size MICROMETRES.');
-  }
-  const outcome = readTrajectories(bytes, inspection.spec);
-  if (outcome.failed) throw new CommandError(outcome.message);
-  for (const note of inspection.notes) console.error(`${file}: ${note}`);
-  if (outcome.problemCount > 0) {
-    console.error(
-      `${file}: ${outcome.problemCount} row(s) could not be used; the first is line ${outcome.problems[0]?.line} (${outcome.problems[0]?.reason}).`,
-    );
-  }
+function analyseFile(file: string, options: Options): FileOutcome {
+  const bytes = readBytes(file);
+  const { inspection, read } = takeIn(bytes, path.basename(file), options.stated);
+  if (inspection.failed) throw new CommandError(inspection.message);
+  if (read === null) throw new CommandError(howToState(inspection));
+  if (read.failed) throw new CommandError(read.message);
   const hash = readingHash(createHash('sha256').update(bytes).digest('hex'), inspection.spec);
-  const result = analyse([{ ...outcome.trajectories, hash }], options.settings);
+  const result = analyse([{ ...read.trajectories, hash }], options.settings);
   if ('failed' in result) throw new CommandError(result.message);
-  return result;
-}
-
-function toJson(file: string, result: AnalysisResult) {
-  const { D, drift } = result;
   return {
     file,
-    D: D?.value ?? null,
-    D_lo: D?.lo ?? null,
-    D_hi: D?.hi ?? null,
-    sigma: result.sigma,
-    verdict: result.verdict,
-    v: drift?.significant ? drift.speed : null,
-    L: result.L?.value ?? null,
-    alpha: result.alpha?.value ?? null,
-    tracks: result.tracks,
-    frames: result.frames,
-    warnings: result.warnings.map((warning) => warning.code),
+    result,
+    description: describeReading(inspection.spec, read.summary),
+    remarks: remarksOf(inspection, read, options),
   };
 }
 
-function forPeople(file: string, result: AnalysisResult): string {
-  const digits = (value: number | null | undefined) =>
-    value === null || value === undefined ? '–' : value.toPrecision(3);
-  const { D } = result;
-  const headline = D ? `D = ${digits(D.value)} µm²/s (${digits(D.lo)} to ${digits(D.hi)})` : 'no D';
-  const lines = [
-    `${file}: ${headline}, ${result.verdict}; ${result.tracks} tracks, ${result.frames} frames`,
-    `  ${result.sentence}`,
-    ...result.warnings.map((warning) => `  ${warning.level}: ${warning.message}`),
-  ];
-  return lines.join('\n');
+function remarksOf(inspection: Inspection, read: ReadOutcome, options: Options): Remark[] {
+  const remarks: Remark[] = inspection.notes.map((message) => ({ code: null, message }));
+  for (const what of inspection.assumed)
+    if (what !== 'exposure') remarks.push({ code: ASSUMED[what] ?? null, message: null });
+  if (options.stated.pixelSize && inspection.spec.pixelSize === null)
+    remarks.push({ code: 'pixel-size-not-used', message: null });
+  const [first] = read.problems;
+  if (first) {
+    const rows = `${read.problemCount} ${read.problemCount === 1 ? 'row' : 'rows'}`;
+    remarks.push({
+      code: 'rows-not-used',
+      message: `${rows} could not be used, or not wholly; the first is line ${first.line} (${first.reason}).`,
+    });
+  }
+  return remarks;
+}
+
+/** Codes for what a note already says in words. */
+const ASSUMED: Partial<Record<Missing, string>> = {
+  lengthUnit: 'length-unit-assumed',
+  timeUnit: 'time-unit-assumed',
+};
+
+const STATE: Readonly<Record<Missing, string>> = {
+  frameInterval: 'The file counts frames; state the time between them with --frame-interval SECONDS.',
+  pixelSize: 'Positions are in pixels; state the size of one with --pixel-size MICROMETRES.',
+  lengthUnit: 'The unit of length cannot be converted.',
+  timeUnit: 'The unit of time cannot be converted.',
+  exposure: 'State the exposure with --exposure SECONDS.',
+};
+
+/** What is missing and how to state it, with what intake said about units. */
+function howToState({ required, notes }: Inspection): string {
+  const units = required.includes('lengthUnit') || required.includes('timeUnit');
+  const reasons = units ? notes.filter((note) => note.startsWith('The unit ')) : [];
+  return [...required.map((what) => STATE[what]), ...reasons].join(' ');
+}
+
+function readBytes(file: string): Buffer {
+  const place = path.resolve(callersFolder(), file);
+  try {
+    const { size } = statSync(place);
+    if (size > MAX_BYTES) throw new CommandError(tooBig(size).message);
+    return readFileSync(place);
+  } catch (error) {
+    const { code } = error as NodeJS.ErrnoException;
+    if (code === undefined) throw error;
+    const reasons: Record<string, string> = {
+      ENOENT: 'There is no such file. Check the name.',
+      EISDIR: 'This is a folder. Name a file in it.',
+      EACCES: 'The file may not be read. Check its permissions.',
+    };
+    throw new CommandError(reasons[code] ?? `The file cannot be read (${code}).`);
+  }
+}
+
+/** npm runs a script in the project's folder; file names are meant from where the person is. */
+function callersFolder(): string {
+  const { npm_lifecycle_event: script, INIT_CWD: folder } = process.env;
+  return script === 'analyse' && folder ? folder : process.cwd();
 }
 
 process.exitCode = main(process.argv.slice(2));

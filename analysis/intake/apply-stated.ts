@@ -1,6 +1,7 @@
-import { stillRequired } from './inspect-file';
-import type { Inspection, LengthUnit, ReadingSpec } from './types';
-import { lengthUnit } from './units';
+import { NO_LENGTH_UNIT } from './find-units';
+import { stillRequired } from './required';
+import type { ColumnRoles, Inspection, LengthUnit, Missing, ReadingSpec } from './types';
+import { isOtherUnit, lengthUnit } from './units';
 
 /** What a person says about a file beside what it says itself. Numbers as decimal text. */
 export interface Stated {
@@ -8,39 +9,93 @@ export interface Stated {
   /** Says that positions without a unit are pixels of this many micrometres. */
   readonly pixelSize?: string | null;
   readonly exposure?: ReadingSpec['exposure'];
+  /** Columns chosen by hand; the others stay as guessed. Choosing a time gives up the frame, and the other way round. */
+  readonly columns?: Partial<ColumnRoles>;
+  /** Units chosen by hand win over everything, for a person has seen the header. */
+  readonly units?: Partial<ReadingSpec['units']>;
 }
 
 /**
- * Puts what was stated onto the guessed reading. A unit in the header wins: where the header says µm, a pixel size changes
- * nothing, and a note says so.
+ * Puts what was stated onto the guessed reading and says what is still missing. A unit in the header wins over a pixel size:
+ * where the header says µm, the pixel size changes nothing, `spec.pixelSize` stays null and a note says so.
  */
 export function applyStated(inspection: Inspection, stated: Stated): Inspection {
-  const notes = [...inspection.notes];
-  const spec = { ...inspection.spec, units: { ...inspection.spec.units } };
-  if (stated.frameInterval) spec.frameInterval = stated.frameInterval;
-  if (stated.exposure) spec.exposure = stated.exposure;
-  if (stated.pixelSize) {
-    const inPixels = (column: number | null, unit: LengthUnit | null): LengthUnit | null => {
-      if (column === null || unit === 'px') return unit;
-      return lengthUnit(inspection.columns[column]?.unit ?? '') === null ? 'px' : unit;
-    };
-    const { columns, units } = inspection.spec;
-    spec.units = {
-      ...units,
-      x: inPixels(columns.x, units.x) ?? units.x,
-      y: inPixels(columns.y, units.y),
-      z: inPixels(columns.z, units.z),
-    };
-    if ([spec.units.x, spec.units.y, spec.units.z].includes('px')) spec.pixelSize = stated.pixelSize;
-    else notes.push('The header gives a unit of length, so the pixel size was not used.');
-  }
-  const asked = (what: string) =>
-    !(what === 'lengthUnit' && spec.pixelSize) && !(what === 'exposure' && spec.exposure);
+  const chosen = withColumns(inspection, stated.columns ?? {});
+  const spec = withPixels(
+    inspection,
+    {
+      ...chosen,
+      units: { ...chosen.units, ...definedOnly(stated.units ?? {}) },
+      frameInterval: stated.frameInterval ?? chosen.frameInterval,
+      exposure: stated.exposure ?? chosen.exposure,
+    },
+    stated,
+  );
+  const settled = (what: Missing): boolean => {
+    if (what === 'exposure') return spec.exposure !== null;
+    if (what === 'lengthUnit') return spec.pixelSize !== null || stated.units?.x !== undefined;
+    return what === 'timeUnit' && (spec.columns.time === null || stated.units?.time !== undefined);
+  };
+  const notes = inspection.notes.filter((note) => note !== NO_LENGTH_UNIT || !settled('lengthUnit'));
+  if (stated.pixelSize && spec.pixelSize === null)
+    notes.push('The header gives a unit of length, so the pixel size was not used.');
   return {
     ...inspection,
     spec,
-    required: stillRequired(spec),
-    assumed: inspection.assumed.filter(asked),
-    notes: spec.pixelSize ? notes.filter((note) => !note.startsWith('Positions have no unit')) : notes,
+    required: [...stillRequired(spec), ...inspection.required.filter((what) => !unitChosen(what, stated))],
+    assumed: inspection.assumed.filter((what) => !settled(what)),
+    notes,
   };
 }
+
+/** Only a person can settle a unit that cannot be converted; what else was required is found from the reading. */
+function unitChosen(what: Missing, { units, columns }: Stated): boolean {
+  if (what === 'lengthUnit') return units?.x !== undefined;
+  if (what === 'timeUnit') return units?.time !== undefined || typeof columns?.frame === 'number';
+  return true;
+}
+
+/** Undefined means "as guessed", also when a caller writes it out. */
+function definedOnly<T extends object>(partial: T): T {
+  return Object.fromEntries(Object.entries(partial).filter(([, value]) => value !== undefined)) as T;
+}
+
+function withColumns(inspection: Inspection, stated: Partial<ColumnRoles>): ReadingSpec {
+  const { spec } = inspection;
+  const own = definedOnly(stated);
+  const columns = { ...spec.columns, ...own };
+  if (typeof own.time === 'number') columns.frame = own.frame ?? null;
+  else if (typeof own.frame === 'number') columns.time = null;
+  const unitOf = (column: number | null, before: LengthUnit | null): LengthUnit | null =>
+    column === null ? null : (lengthUnit(inspection.columns[column]?.unit ?? '') ?? before ?? spec.units.x);
+  return {
+    ...spec,
+    columns,
+    units: {
+      time: columns.time === null ? null : (spec.units.time ?? 's'),
+      x: unitOf(columns.x, spec.units.x) ?? spec.units.x,
+      y: unitOf(columns.y, spec.units.y),
+      z: unitOf(columns.z, spec.units.z),
+    },
+  };
+}
+
+/** Positions whose header has no unit become pixels, when the size of one is stated. */
+function withPixels(inspection: Inspection, spec: ReadingSpec, stated: Stated): ReadingSpec {
+  if (!stated.pixelSize) return spec;
+  const inPixels = (axis: 'x' | 'y' | 'z'): LengthUnit | null => {
+    const column = spec.columns[axis];
+    if (column === null || stated.units?.[axis] !== undefined) return spec.units[axis];
+    const text = inspection.columns[column]?.unit ?? '';
+    if (lengthUnit(text) !== null || isOtherUnit(text)) return spec.units[axis];
+    return othersHaveUnit(inspection, spec) ? spec.units[axis] : 'px';
+  };
+  const units = { ...spec.units, x: inPixels('x') ?? spec.units.x, y: inPixels('y'), z: inPixels('z') };
+  const used = [units.x, units.y, units.z].includes('px');
+  return { ...spec, units, pixelSize: used ? stated.pixelSize : null };
+}
+
+const othersHaveUnit = (inspection: Inspection, { columns }: ReadingSpec) =>
+  [columns.x, columns.y, columns.z].some(
+    (column) => column !== null && lengthUnit(inspection.columns[column]?.unit ?? '') !== null,
+  );

@@ -1,20 +1,13 @@
-import type { Exposure, Trajectories } from '../types';
-import { checkSpec } from './check-spec';
+import type { Trajectories } from '../types';
+import { checkColumns, checkSpec } from './check-spec';
+import { RowCollector } from './collect-rows';
+import { contradictionOf } from './contradiction';
 import { decodeFile } from './decode';
-import { MAX_PROBLEMS_KEPT } from './limits';
-import { rowsOf, type Row } from './lines';
-import { readNumber } from './number';
+import { intakeFailure } from './failure';
 import { previewPaths } from './preview-paths';
+import { eachRow, withPlainBreaks } from './rows';
 import { summarise } from './summarise';
-import type {
-  IntakeFailure,
-  LengthUnit,
-  PathPreview,
-  ReadingSpec,
-  ReadingSummary,
-  RowProblem,
-} from './types';
-import { MICROMETRES, SECONDS } from './units';
+import type { Dialect, IntakeFailure, PathPreview, ReadingSpec, ReadingSummary, RowProblem } from './types';
 
 export interface ReadOutcome {
   readonly failed: false;
@@ -32,137 +25,90 @@ export interface ReadOutcome {
  * @returns positions in µm, times in s; bit-equal to Number(text) where no unit is converted.
  */
 export function readTrajectories(bytes: Uint8Array, spec: ReadingSpec): ReadOutcome | IntakeFailure {
-  const bad = checkSpec(spec);
-  if (bad) return bad;
+  const fault = checkSpec(spec);
+  if (fault) return fault;
   const decoded = decodeFile(bytes, spec.dialect.encoding);
   if ('failed' in decoded) return decoded;
-  const rows = rowsOf(decoded.text, spec.dialect);
-  if ('failed' in rows) return rows;
-  const header = rows.find((row) => row.line === spec.dialect.headerLine)?.cells.join('\n');
-  const collect = new Collector(spec);
-  for (const row of rows) {
-    if (row.line < spec.dialect.firstDataLine) continue;
-    if (header !== undefined && row.cells.join('\n') === header) collect.problem(row, 'the header again');
-    else collect.add(row);
+  const text = withPlainBreaks(decoded.text);
+  if (typeof text !== 'string') return text;
+  const collector = new RowCollector(spec);
+  const failed = readRows(text, spec, collector);
+  if (failed) return failed;
+  if (collector.count === 0) {
+    const first = collector.problems[0];
+    return intakeFailure(
+      'no-rows',
+      `Not one row could be read with these columns${first ? ` (line ${first.line}: ${first.reason})` : ''}. Check which columns were chosen, and the decimal mark.`,
+      first?.line ?? spec.dialect.firstDataLine,
+    );
   }
-  if (collect.count === 0) {
-    return {
-      failed: true,
-      code: 'no-rows',
-      message:
-        'Not one row could be read with these columns. Check which columns were chosen, and the decimal mark.',
-      line: spec.dialect.firstDataLine,
-    };
-  }
-  const trajectories = collect.trajectories();
-  const { summary, contradiction } = summarise(trajectories, collect.problemCount);
+  const trajectories = collector.trajectories();
+  const contradiction = contradictionOf(trajectories, spec.frameInterval);
   if (contradiction) return contradiction;
   return {
     failed: false,
     trajectories,
-    summary,
-    problems: collect.problems,
-    problemCount: collect.problemCount,
+    summary: summarise(trajectories, collector.problemCount),
+    problems: collector.problems,
+    problemCount: collector.problemCount,
     paths: previewPaths(trajectories),
   };
 }
 
-const NAMES = ['x', 'y', 'z'] as const;
+function readRows(text: string, spec: ReadingSpec, collector: RowCollector): IntakeFailure | null {
+  const { dialect } = spec;
+  const header = new RepeatedHeader(dialect);
+  let width = 0;
+  let missing: IntakeFailure | null = null;
+  const failed = eachRow(text, dialect, {
+    fault: (line, reason, shown) => {
+      if (line >= dialect.firstDataLine) collector.addProblem(line, reason, shown);
+    },
+    row: ({ line, cells }, shown) => {
+      if (line < dialect.firstDataLine) {
+        header.remember(line, cells);
+        // Cut at blanks, names with a unit behind them are more cells than there are columns.
+        if (line === dialect.headerLine && dialect.delimiter !== ' ') width = cells.length;
+        return;
+      }
+      if (missing === null && collector.count === 0 && collector.problemCount === 0) {
+        width = Math.max(width, cells.length);
+        missing = checkColumns(spec, width);
+        if (missing) return false;
+      }
+      if (header.isAgain(cells)) collector.addProblem(line, 'the header again', shown());
+      else if (misfit(cells, width, dialect.delimiter))
+        collector.addProblem(line, `${cells.length} cells instead of ${width}`, shown());
+      else collector.add(line, cells, shown);
+      return;
+    },
+  });
+  return missing ?? failed;
+}
 
-class Collector {
-  readonly problems: RowProblem[] = [];
-  problemCount = 0;
-  private readonly ids = new Map<string, number>();
-  private readonly track: number[] = [];
-  private readonly clock: number[] = [];
-  private readonly axes: number[][];
-  private readonly axisColumns: readonly number[];
-  private readonly scales: readonly ((value: number) => number)[];
+/** A header or a row of units that stands in the middle of a file, as where two files were joined. */
+class RepeatedHeader {
+  private readonly seen: (readonly string[])[] = [];
 
-  constructor(private readonly spec: ReadingSpec) {
-    const { columns, units } = spec;
-    const used = NAMES.filter((name) => columns[name] !== null);
-    this.axisColumns = used.map((name) => columns[name]!);
-    this.scales = used.map((name) => toMicrometres(units[name]!, Number(spec.pixelSize)));
-    this.axes = used.map(() => []);
+  constructor(private readonly dialect: Dialect) {}
+
+  remember(line: number, cells: readonly string[]): void {
+    if (line === this.dialect.headerLine || line === this.dialect.unitsLine) this.seen.push(cells);
   }
 
-  get count(): number {
-    return this.track.length;
-  }
-
-  problem(row: Row, reason: string): void {
-    this.problemCount += 1;
-    if (this.problems.length < MAX_PROBLEMS_KEPT) {
-      this.problems.push({
-        line: row.line,
-        reason,
-        text: row.cells.join(this.spec.dialect.delimiter).slice(0, 200),
-      });
-    }
-  }
-
-  add(row: Row): void {
-    const { columns, dialect, units } = this.spec;
-    const id = columns.track === null ? '1' : (row.cells[columns.track] ?? '');
-    if (id === '') return this.problem(row, 'no track');
-    const clockColumn = columns.time ?? columns.frame!;
-    const clockText = row.cells[clockColumn] ?? '';
-    const clock = readNumber(clockText, dialect.decimal);
-    const what = columns.time === null ? 'frame' : 'time';
-    if (Number.isNaN(clock))
-      return this.problem(
-        row,
-        clockText === '' ? `no ${what}` : `${what} "${short(clockText)}" is not a number`,
-      );
-    if (columns.time === null && (!Number.isInteger(clock) || Math.abs(clock) > 2 ** 31 - 1)) {
-      return this.problem(row, `frame "${short(clockText)}" is not a whole number`);
-    }
-    const values = this.axisColumns.map((column) => readNumber(row.cells[column] ?? '', dialect.decimal));
-    const unreadable = values.findIndex(Number.isNaN);
-    if (unreadable >= 0) {
-      const text = row.cells[this.axisColumns[unreadable]!] ?? '';
-      const name = NAMES.filter((one) => columns[one] !== null)[unreadable]!;
-      this.problem(row, text === '' ? `no ${name}` : `${name} "${short(text)}" is not a number`);
-    }
-    let track = this.ids.get(id);
-    if (track === undefined) this.ids.set(id, (track = this.ids.size));
-    this.track.push(track);
-    this.clock.push(columns.time === null ? clock : toSeconds(clock, SECONDS[units.time ?? 's']));
-    for (const [axis, value] of values.entries())
-      this.axes[axis]!.push(unreadable >= 0 ? NaN : this.scales[axis]!(value));
-  }
-
-  trajectories(): Omit<Trajectories, 'hash'> {
-    const timed = this.spec.columns.time !== null;
-    return {
-      trackIds: [...this.ids.keys()],
-      track: Int32Array.from(this.track),
-      frame: timed ? null : Int32Array.from(this.clock),
-      time: timed ? Float64Array.from(this.clock) : null,
-      axes: this.axes.map((axis) => Float64Array.from(axis)),
-      frameInterval: this.spec.frameInterval === null ? null : Number(this.spec.frameInterval),
-      exposure: exposureOf(this.spec),
-    };
+  isAgain(cells: readonly string[]): boolean {
+    return this.seen.some(
+      (row) => row.length === cells.length && row.every((cell, at) => cell === cells[at]),
+    );
   }
 }
 
-const short = (text: string) => (text.length > 30 ? `${text.slice(0, 30)}…` : text);
-
-/** Division by a whole number rounds once; multiplication by 0.001 would round twice. */
-const toSeconds = (value: number, seconds: number) =>
-  seconds < 1 ? value / Math.round(1 / seconds) : value * seconds;
-
-function toMicrometres(unit: LengthUnit, pixel: number): (value: number) => number {
-  if (unit === 'um') return (value) => value;
-  if (unit === 'px') return (value) => value * pixel;
-  const factor = MICROMETRES[unit];
-  return factor < 1 ? (value) => value / Math.round(1 / factor) : (value) => value * factor;
-}
-
-function exposureOf(spec: ReadingSpec): Exposure | null {
-  if (spec.exposure === null) return null;
-  return 'seconds' in spec.exposure
-    ? { seconds: Number(spec.exposure.seconds) }
-    : { fraction: Number(spec.exposure.fraction) };
+/**
+ * A row with more cells than the table has columns was cut wrongly, perhaps at a comma inside a number; empty cells at the end
+ * do not count. Cut at blanks, an empty cell leaves no trace, so there a row with fewer cells has them in the wrong places.
+ */
+function misfit(cells: readonly string[], width: number, delimiter: Dialect['delimiter']): boolean {
+  if (cells.length === width) return false;
+  if (delimiter === ' ') return true;
+  return cells.length > width && cells.slice(width).some((cell) => cell !== '');
 }

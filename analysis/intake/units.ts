@@ -18,12 +18,15 @@ const TIME_WORDS: Readonly<Record<string, TimeUnit>> = {
   seconds: 's',
   ms: 'ms',
   msec: 'ms',
+  msecs: 'ms',
   millisecond: 'ms',
   milliseconds: 'ms',
   us: 'us',
+  usec: 'us',
   microsecond: 'us',
   microseconds: 'us',
   min: 'min',
+  mins: 'min',
   minute: 'min',
   minutes: 'min',
   h: 'h',
@@ -46,6 +49,7 @@ const LENGTH_WORDS: Readonly<Record<string, LengthUnit>> = {
   nanometres: 'nm',
   mm: 'mm',
   millimeter: 'mm',
+  millimeters: 'mm',
   millimetre: 'mm',
   millimetres: 'mm',
   m: 'm',
@@ -55,30 +59,74 @@ const LENGTH_WORDS: Readonly<Record<string, LengthUnit>> = {
   metres: 'm',
   px: 'px',
   pix: 'px',
+  pxl: 'px',
   pixel: 'px',
   pixels: 'px',
 };
 
-/** A unit as people write it: µ (U+00B5) and μ (U+03BC) both mean micro. */
-const plain = (text: string) => text.trim().toLowerCase().replaceAll('µ', 'u').replaceAll('μ', 'u');
+/** Units that exist but are not converted here: a file in them must not pass as micrometres or seconds. */
+const OTHER_UNITS: ReadonlySet<string> = new Set(
+  [
+    'pm',
+    'å',
+    'a',
+    'ang',
+    'angstrom',
+    'angstroms',
+    'ångström',
+    'cm',
+    'dm',
+    'km',
+    'in',
+    'inch',
+    'inches',
+    'ft',
+    'mil',
+  ].concat(['fs', 'ps', 'ns', 'nanosecond', 'nanoseconds', 'd', 'day', 'days', 'week', 'weeks']),
+);
+const FRAME_WORDS: ReadonlySet<string> = new Set(['frame', 'frames', 'image', 'images', 'slice', 'slices']);
 
-export const timeUnit = (text: string): TimeUnit | null => TIME_WORDS[plain(text)] ?? null;
-export const lengthUnit = (text: string): LengthUnit | null => LENGTH_WORDS[plain(text)] ?? null;
+/** A unit as people write it: µ (U+00B5) and μ (U+03BC) both mean micro; a full stop after "sec." means nothing. */
+function plain(text: string): string {
+  const lower = text.trim().toLowerCase().replaceAll('µ', 'u').replaceAll('μ', 'u');
+  return lower.endsWith('.') ? lower.slice(0, -1) : lower;
+}
+/** Own words only: "constructor" is no unit. */
+const lookUp = <T>(words: Readonly<Record<string, T>>, text: string): T | null =>
+  Object.hasOwn(words, plain(text)) ? words[plain(text)]! : null;
+
+export const timeUnit = (text: string): TimeUnit | null => lookUp(TIME_WORDS, text);
+export const lengthUnit = (text: string): LengthUnit | null => lookUp(LENGTH_WORDS, text);
 export const isUnit = (text: string): boolean => timeUnit(text) !== null || lengthUnit(text) !== null;
+/** A unit of length or time that cannot be converted here, such as inches or days. */
+export const isOtherUnit = (text: string): boolean => OTHER_UNITS.has(plain(text));
+/** "time (frames)" counts frames. */
+export const countsFrames = (text: string): boolean => FRAME_WORDS.has(plain(text));
+
+const BRACKETS: Readonly<Record<string, string>> = { ')': '(', ']': '[', '}': '{' };
+
+/** Text without one pair of brackets around it: "(s)" → "s". */
+export function withoutBrackets(text: string): string {
+  const open = BRACKETS[text.at(-1) ?? ''];
+  return open !== undefined && text.startsWith(open) ? text.slice(1, -1).trim() : text;
+}
 
 /**
  * A column's name and unit: "x (µm)", "time [s]", "x/µm", "time, s", "x_um", "t_s", "x µm".
- * @returns unit as written, or null.
+ * @returns unit as written, or null. Only brackets may hold a unit that is not known.
  */
 export function splitNameAndUnit(header: string): { name: string; unit: string | null } {
   const text = header.trim();
-  const last = text.at(-1);
-  const open = last === ')' ? text.lastIndexOf('(') : last === ']' ? text.lastIndexOf('[') : -1;
+  const bracket = BRACKETS[text.at(-1) ?? ''];
+  const open = bracket === undefined ? -1 : text.lastIndexOf(bracket);
   if (open > 0) return { name: text.slice(0, open).trim(), unit: text.slice(open + 1, -1).trim() || null };
-  for (const mark of ['/', ',', '_', ' ']) {
+  for (const mark of ['/', ',', ';', '_', ' ']) {
     const at = text.lastIndexOf(mark);
-    if (at > 0 && isUnit(text.slice(at + 1)))
-      return { name: text.slice(0, at).trim(), unit: text.slice(at + 1).trim() };
+    const unit = text.slice(at + 1).trim();
+    if (at > 0 && (isUnit(unit) || (mark === '/' && isOtherUnit(unit)))) {
+      const name = text.slice(0, at).trim();
+      return { name: name.endsWith(' in') ? name.slice(0, -3).trim() : name, unit };
+    }
   }
   return { name: text, unit: null };
 }

@@ -1,8 +1,7 @@
 import { analyse, ENGINE_VERSION } from '../analyse';
-import { applyStated } from '../intake/apply-stated';
-import { inspectFile, stillRequired } from '../intake/inspect-file';
 import { readTrajectories, type ReadOutcome } from '../intake/read-trajectories';
-import type { Inspection, IntakeFailure } from '../intake/types';
+import { takeIn } from '../intake/take-in';
+import type { IntakeFailure } from '../intake/types';
 import type { AnalysisFailure, AnalysisResult, Trajectories } from '../types';
 import type { IntakeAnswer, ReadSummary, WorkerAnswers, WorkerRequest } from './messages';
 
@@ -19,15 +18,8 @@ export function handle(request: WorkerRequest): WorkerAnswers[WorkerRequest['kin
 }
 
 function intake(request: Extract<WorkerRequest, { kind: 'intake' }>): IntakeAnswer {
-  const inspected = inspectFile(request.bytes, request.name);
-  if (inspected.failed) return { inspection: inspected, read: null };
-  const guessed = applyStated(inspected, request.stated);
-  const inspection: Inspection = request.spec
-    ? { ...guessed, spec: request.spec, required: stillRequired(request.spec) }
-    : guessed;
-  const read =
-    inspection.required.length > 0 ? null : summaryOf(readTrajectories(request.bytes, inspection.spec));
-  return { inspection, read };
+  const { inspection, read } = takeIn(request.bytes, request.name, request.stated, request.spec);
+  return { inspection, read: read && summaryOf(read) };
 }
 
 function summaryOf(outcome: ReadOutcome | IntakeFailure): ReadSummary | IntakeFailure {

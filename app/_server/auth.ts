@@ -41,13 +41,21 @@ export function authOptions(): NextAuthOptions {
     },
     providers: [
       Credentials({
-        credentials: { name: { label: 'Login name or e-mail' }, password: { label: 'Password', type: 'password' } },
+        credentials: {
+          name: { label: 'Login name or e-mail' },
+          password: { label: 'Password', type: 'password' },
+        },
         async authorize(given, request) {
           const name = given?.name;
           const password = given?.password;
-          if (typeof name !== 'string' || typeof password !== 'string' || name === '' || password === '') return null;
+          if (typeof name !== 'string' || typeof password !== 'string' || name === '' || password === '')
+            return null;
           const agent: unknown = request.headers?.['user-agent'];
-          const started = await startLogin(db(), { name, password, userAgent: typeof agent === 'string' ? agent : '' });
+          const started = await startLogin(db(), {
+            name,
+            password,
+            userAgent: typeof agent === 'string' ? agent : '',
+          });
           return started && { id: started.personId, loginId: started.loginId };
         },
       }),

@@ -56,7 +56,8 @@ export function route<
 const PRIVATE = { 'Cache-Control': 'private, no-store' };
 
 function checkOrigin(request: NextRequest): void {
-  if (request.headers.get('origin') !== new URL(env().NEXTAUTH_URL).origin) throw new AppError('foreign-origin');
+  if (request.headers.get('origin') !== new URL(env().NEXTAUTH_URL).origin)
+    throw new AppError('foreign-origin');
 }
 
 function readQuery(request: NextRequest): Record<string, string> {
@@ -73,7 +74,8 @@ async function readBody(request: NextRequest): Promise<unknown> {
     throw new AppError('bad-input', { sentence: 'The request must be JSON.' });
   }
   const text = await request.text();
-  if (text.length > BODY_LIMIT_BYTES) throw new AppError('too-big', { sentence: 'The request is too large.' });
+  if (text.length > BODY_LIMIT_BYTES)
+    throw new AppError('too-big', { sentence: 'The request is too large.' });
   try {
     return JSON.parse(text) as unknown;
   } catch {
