@@ -90,7 +90,7 @@ function Page({
   return (
     <div className="flex flex-col">
       {header}
-      <div className="wide:grid wide:grid-cols-[minmax(0,1fr)_var(--spacing-margin)] wide:gap-8">
+      <div className="wide:grid wide:grid-cols-[minmax(0,1fr)_220px] wide:gap-8">
         {/* Times, people and remarks live in the margin; on a narrow page they stand above the text. */}
         <aside
           aria-label="Margin"

@@ -18,7 +18,7 @@ export async function seedEntry(tx: Transaction, input: { entryId: string; actor
 }
 
 /**
- * Puts nodes at the end of an entry.
+ * Puts nodes at the end of an entry; in one that is still blank they take the place of its empty paragraph.
  * @throws AppError locked | forbidden | conflict - as append_updates refuses.
  */
 export async function appendServerEdit(
@@ -31,6 +31,7 @@ export async function appendServerEdit(
   const before = Y.encodeStateVector(doc);
   doc.transact(() => {
     const root = doc.getXmlFragment(ROOT);
+    if (isBlank(root)) root.delete(0, root.length);
     root.insert(root.length, input.append.map(toShared));
   });
   const payload = Buffer.from(Y.encodeStateAsUpdate(doc, before));
@@ -45,4 +46,10 @@ export async function appendServerEdit(
   const refusal = rows[0]?.refusal;
   if (refusal === 'locked' || refusal === 'forbidden') throw new AppError(refusal);
   if (refusal) throw new AppError('conflict', { message: `append_updates refused with ${refusal}` });
+}
+
+/** Only the empty paragraph that every entry begins with. */
+function isBlank(root: Y.XmlFragment): boolean {
+  const only = root.length === 1 ? root.get(0) : null;
+  return only instanceof Y.XmlElement && only.nodeName === 'paragraph' && only.length === 0;
 }
