@@ -2,7 +2,7 @@ import { ENGINE_VERSION } from '../../analysis/analyse';
 import type { AnalysisFailure, AnalysisResult } from '../../analysis/types';
 import type { Database } from '../../db/client';
 import type { Trouble, WantedResult } from '../../db/commands/projection/describe-blocks';
-import { keepResult } from '../../db/commands/projection/keep-result';
+import { isResultKept, keepResult } from '../../db/commands/projection/keep-result';
 import { AppError } from '../../db/errors';
 import type { StoredFileRef } from '../../db/files/open-stored-file';
 import type { AnalysisWorker } from '../../db/worker/analysis-worker';
@@ -109,10 +109,8 @@ export class ResultQueue {
     job.attempts += 1;
     const { address } = job.wanted;
     try {
-      const started = performance.now();
-      const outcome = await this.compute(job.wanted);
-      const milliseconds = Math.round(performance.now() - started);
-      await keepResult(this.options.db, { address, engine: ENGINE_VERSION, outcome, milliseconds });
+      // An entry that was read just before another's answer was kept asks for what is there by now.
+      if (!(await isResultKept(this.options.db, address))) await this.answer(job.wanted);
       this.jobs.delete(address);
       this.options.onNews([...job.entries]);
     } catch (error) {
@@ -120,6 +118,18 @@ export class ResultQueue {
       this.options.complain(`result ${address.slice(0, 12)}`, error);
       this.setBack(job, troubleFor(error, job.attempts));
     }
+  }
+
+  private async answer(wanted: WantedResult): Promise<void> {
+    const started = performance.now();
+    const outcome = await this.compute(wanted);
+    const milliseconds = Math.round(performance.now() - started);
+    await keepResult(this.options.db, {
+      address: wanted.address,
+      engine: ENGINE_VERSION,
+      outcome,
+      milliseconds,
+    });
   }
 
   private async compute(wanted: WantedResult): Promise<AnalysisResult | AnalysisFailure> {
