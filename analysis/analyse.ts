@@ -1,7 +1,7 @@
 import { standardErrors } from './estimators/likelihood';
 import type { ProfileInterval } from './estimators/profile-interval';
 import { prepare, type Prepared } from './input/prepare';
-import { segmentsOf } from './input/segments';
+import { isUniform, segmentsOf } from './input/segments';
 import { describeMsd } from './msd/describe';
 import { sizeOrViscosity } from './physics/size-or-viscosity';
 import { spectrumOf, type Spectrum } from './spectrum/spectrum';
@@ -23,6 +23,9 @@ import { resultWarnings } from './verdict/warnings';
 
 /** Raised whenever a number that the engine gives could change: results keep the engine that made them. */
 export const ENGINE_VERSION = 'motebook-engine/1';
+
+/** Squared displacements below this, µm², are no motion: far below it their squares would not be numbers any more. */
+const NO_MOTION = 1e-60;
 
 export const DEFAULT_SETTINGS: AnalysisSettings = {
   dims: 'auto',
@@ -66,10 +69,16 @@ export function analyse(
     );
   }
   const spectrum = spectrumOf(segments, prepared.dims);
-  if (spectrum.groups.every((group) => group.power.every((value) => value === 0))) {
+  if (spectrum.groups.every((group) => group.power.every((value) => value < NO_MOTION))) {
     return fail(
       'nothing-moves',
       'All positions of every track are the same, to the last digit. Check that the position columns are the right ones.',
+    );
+  }
+  if (isUniform(segments)) {
+    return fail(
+      'nothing-diffuses',
+      'All tracks run on at one constant velocity, to the last digit, so nothing diffuses. Check that the position columns are the right ones: a column of times or frame numbers looks like this.',
     );
   }
   const exposure = exposureOf(readings, settings, prepared.interval);
@@ -133,7 +142,7 @@ function assemble(found: Findings): AnalysisResult {
     exposureFraction: found.exposure.fraction,
     fit: used.fit,
     ends,
-    driftStep: free.driftRemoved ? free.drifting.step : null,
+    driftStep: free.driftRemoved && free.drifting ? free.drifting.step : null,
     settings: found.settings,
   });
   return {
@@ -194,6 +203,7 @@ function toEstimate(delta: number, ends: ProfileInterval, interval: number): Est
 }
 
 function driftOf(free: FreeFit, interval: number): Drift | null {
+  if (!free.drifting) return null;
   const { step, se } = free.drifting;
   if (!step.every(Number.isFinite) || !Number.isFinite(se)) return null;
   const velocity = step.map((value) => value / interval);

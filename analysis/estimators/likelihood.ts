@@ -1,4 +1,4 @@
-import { minimise } from '../fit/minimise';
+import { minimise, minimiseOnGrid } from '../fit/minimise';
 import type { Spectrum } from '../spectrum/spectrum';
 import { noiseSpectrum } from '../spectrum/sine-transform';
 
@@ -179,7 +179,10 @@ export function fitDelta(spectrum: Spectrum, a: Shape, b: Shape, s: number): Two
   return { delta: Math.exp(found.x), s, minus2LogL: found.value };
 }
 
-/** Best s for a known δ, λ = δa + sb. @param guess - a nearby answer. */
+/** With this many coefficients the likelihood has one dip, so a search around a nearby answer is enough. */
+const ONE_DIP_FROM = 400;
+
+/** Best s for a known δ, λ = δa + sb. @param guess - a nearby answer; few data are searched as a whole. */
 export function fitNoise(
   spectrum: Spectrum,
   a: Shape,
@@ -189,6 +192,13 @@ export function fitNoise(
 ): TwoParameterFit {
   const least = delta * leastRatio(a, b);
   const f = (x: number) => minus2LogLikelihood(spectrum, a, b, delta, least + Math.exp(x));
+  if (spectrum.coefficients < ONE_DIP_FROM) {
+    // Where all spread is noise, s is about the mean power, whatever δ is; beyond that there is nothing to find.
+    const last = Math.log(Math.max(fitOne(spectrum, b).scale, 30 * delta)) + 1;
+    const grid = RATIO_GRID.map((w) => Math.log(delta * w)).filter((x) => x < last);
+    const found = minimiseOnGrid(f, [...grid, last]);
+    return { delta, s: least + Math.exp(found.x), minus2LogL: found.value };
+  }
   const around = Math.log(Math.max(guess - least, delta * 1e-6));
   let found = minimise(f, around - 3, around + 3, { guess: around });
   if (Math.abs(found.x - around) > 2.9) found = minimise(f, around - 25, around + 25, { guess: found.x });

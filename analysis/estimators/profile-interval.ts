@@ -55,11 +55,18 @@ function scaleOf(spectrum: Spectrum): number {
 /** Where f crosses zero, going from `centre` in steps of growing size; null when it never does. */
 function edge(f: (x: number) => number, centre: number, direction: 1 | -1): number | null {
   let inside = centre;
+  let below = Math.min(f(centre), 0);
   let step = 0.05;
   for (let i = 0; i < 60; i++) {
     const outside = centre + direction * step;
-    if (f(outside) > 0) return findRoot(f, Math.min(inside, outside), Math.max(inside, outside), 1e-10);
+    const value = f(outside);
+    if (value > 0) {
+      return direction === 1
+        ? findRoot(f, inside, outside, 1e-10, [below, value])
+        : findRoot(f, outside, inside, 1e-10, [value, below]);
+    }
     inside = outside;
+    below = value;
     step *= 1.6;
     if (step > 60) return null;
   }

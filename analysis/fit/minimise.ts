@@ -87,10 +87,19 @@ export function minimiseOnGrid(f: (x: number) => number, grid: readonly number[]
   return polished.value <= values[best]! ? polished : { x: grid[best]!, value: values[best]! };
 }
 
-/** Root of f between a and b, where f has opposite signs; bisection with secant steps (Illinois variant of regula falsi). */
-export function findRoot(f: (x: number) => number, a: number, b: number, tolerance = 1e-9): number {
-  let fa = f(a);
-  let fb = f(b);
+/**
+ * Root of f between a and b, where f has opposite signs; bisection with secant steps (Illinois variant of regula falsi).
+ * @param ends - f(a) and f(b) when they are known already.
+ * @throws RangeError when the signs are equal.
+ */
+export function findRoot(
+  f: (x: number) => number,
+  a: number,
+  b: number,
+  tolerance = 1e-9,
+  ends?: readonly [number, number],
+): number {
+  let [fa, fb] = ends ?? [f(a), f(b)];
   if (fa === 0) return a;
   if (fb === 0) return b;
   if (fa * fb > 0) throw new RangeError(`no sign change between ${a} and ${b}`);

@@ -11,8 +11,8 @@ export interface RawTrack {
   readonly axes: readonly Float64Array[];
 }
 
-/** Beyond this a coordinate or time is no measurement, and its square would overflow. */
-const LARGEST = 1e100;
+/** Beyond this a coordinate or time is no measurement, and the fourth powers that are summed would overflow. */
+const LARGEST = 1e60;
 
 /**
  * Groups a reading's rows by track and sorts them. A row with an unreadable position is a gap.

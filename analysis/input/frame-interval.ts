@@ -11,13 +11,19 @@ export interface FrameTiming {
   readonly rms: number;
 }
 
+/** Times are regular when none is further off its frame, and all together no further, than these parts of an interval. */
+export const REGULAR_WORST = 0.1;
+export const REGULAR_RMS = 0.02;
+
 /**
  * Frame interval: the median positive difference within tracks, then refined by least squares over whole tracks, because
- * times written with few digits (0.04189, 0.08379 …) would otherwise drift off by frames in a long track.
+ * times written with few digits (0.04189, 0.08379 …) would otherwise drift off by frames in a long track. Where so many
+ * frames are missing that the median spans several of them, a part of it, or the smallest difference, is what fits.
  * @param tracks - times of each track, seconds, ascending.
  * @returns null when no track has two distinct times.
  */
 export function frameTiming(tracks: readonly TrackTimes[], given: number | null): FrameTiming | null {
+  if (given !== null) return judge(tracks, given);
   const differences: number[] = [];
   for (const times of tracks) {
     for (let i = 1; i < times.length; i++) {
@@ -25,8 +31,22 @@ export function frameTiming(tracks: readonly TrackTimes[], given: number | null)
       if (step > 0) differences.push(step);
     }
   }
-  if (differences.length === 0 && given === null) return null;
-  const interval = given ?? refine(tracks, median(differences));
+  if (differences.length === 0) return null;
+  const middle = median(differences);
+  const first = judge(tracks, refine(tracks, middle));
+  if (isRegular(first)) return first;
+  for (const guess of [middle / 2, middle / 3, middle / 4, differences[0]!]) {
+    const other = judge(tracks, refine(tracks, guess));
+    if (isRegular(other)) return other;
+  }
+  return first;
+}
+
+export function isRegular(timing: FrameTiming): boolean {
+  return timing.worst <= REGULAR_WORST && timing.rms <= REGULAR_RMS;
+}
+
+function judge(tracks: readonly TrackTimes[], interval: number): FrameTiming {
   let worst = 0;
   let sum = 0;
   let count = 0;

@@ -1,5 +1,5 @@
 import type { AnalysisSettings, Exclusion, Trajectories, Warning } from '../types';
-import { frameTiming, type FrameTiming } from './frame-interval';
+import { frameTiming, isRegular, type FrameTiming } from './frame-interval';
 import { collectRows, type RawTrack } from './collect-rows';
 
 /** One particle's positions, sorted, without doubles, relative to its first position. */
@@ -30,6 +30,10 @@ export interface PrepareFailure {
 
 /** Readings of one block may differ in their frame interval by this much and still be one ensemble. */
 const INTERVAL_TOLERANCE = 1e-3;
+
+/** A femtosecond and thirty thousand years: no camera is outside, and inside all numbers stay numbers. Seconds. */
+const SHORTEST_INTERVAL = 1e-15;
+const LONGEST_INTERVAL = 1e12;
 
 /**
  * Turns readings into tracks fit for analysis and counts everything that is left out, with the reason.
@@ -130,6 +134,12 @@ function timingOf(reading: Trajectories, tracks: readonly RawTrack[]): FrameTimi
       message: 'No track has two positions at different times, so nothing can be said about motion.',
     };
   }
+  if (timing.interval < SHORTEST_INTERVAL || timing.interval > LONGEST_INTERVAL) {
+    return {
+      code: 'interval-impossible',
+      message: `The times lie ${timing.interval} s apart, which cannot be a frame interval. Check the time column and its unit.`,
+    };
+  }
   if (timing.rms > 0.1) {
     return {
       code: 'irregular-intervals',
@@ -140,9 +150,8 @@ function timingOf(reading: Trajectories, tracks: readonly RawTrack[]): FrameTimi
 }
 
 function addTimingWarning(timings: readonly FrameTiming[], warnings: Warning[]): void {
+  if (timings.every(isRegular)) return;
   const worst = Math.max(...timings.map((timing) => timing.worst));
-  const rms = Math.max(...timings.map((timing) => timing.rms));
-  if (worst <= 0.1 && rms <= 0.02) return;
   warnings.push({
     code: 'irregular-intervals',
     level: 'look',

@@ -35,3 +35,22 @@ function differences(axis: Float64Array, start: number, end: number): Float64Arr
   for (let i = 0; i < steps.length; i++) steps[i] = axis[start + i + 1]! - axis[start + i]!;
   return steps;
 }
+
+/** Positions are written with a few digits, so equal displacements differ by rounding: this part of their mean square. */
+const ROUNDING = 1e-18;
+
+/** Whether two or more displacements are all the same: a column of numbers that count, not a motion. */
+export function isUniform(segments: readonly Segment[]): boolean {
+  const dims = segments[0]?.displacements.length ?? 0;
+  const count = segments.reduce((total, segment) => total + segment.displacements[0]!.length, 0);
+  if (count < 2) return false;
+  for (let axis = 0; axis < dims; axis++) {
+    const steps = segments.map((segment) => segment.displacements[axis]!);
+    const mean = steps.reduce((total, own) => total + own.reduce((sum, one) => sum + one, 0), 0) / count;
+    for (const own of steps) {
+      // The first displacement that differs settles it.
+      if (own.some((one) => (one - mean) ** 2 > ROUNDING * mean * mean)) return false;
+    }
+  }
+  return true;
+}

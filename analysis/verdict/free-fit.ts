@@ -21,7 +21,8 @@ export interface FreeFit {
   /** σ² that was given, µm²; null when it is fitted. */
   readonly knownS: number | null;
   readonly still: TwoParameterFit;
-  readonly drifting: DriftFit;
+  /** Null when there are too few displacements to tell a drift from diffusion. */
+  readonly drifting: DriftFit | null;
   /** Relative standard error of D of the still fit; Infinity when it has none. */
   readonly relativeError: number;
   /** Dispersion φ ≥ 1 by which every test statistic is divided (heterogeneous or heavy-tailed data). */
@@ -38,6 +39,8 @@ export interface FreeFit {
 
 /** χ² with 1, 2, 3 degrees of freedom, 97.5 %. Source: NIST/SEMATECH e-Handbook 1.3.6.7.4. */
 const CHI2_975 = [5.023886, 7.377759, 9.348404] as const;
+/** A drift takes one number an axis away from D and σ²; of fewer displacements nothing would be left to judge by. */
+const DRIFT_FROM = 4;
 /** Fewer coefficients than this say too little about their own spread. */
 const DISPERSION_FROM = 200;
 
@@ -48,16 +51,16 @@ export function fitFree(spectrum: Spectrum, blurFraction: number, settings: Anal
   // Two-point tracks cannot tell D from σ²: σ is then what was given, or zero (said in a warning).
   const knownS = settings.sigma !== null ? settings.sigma ** 2 : single ? 0 : null;
   const still = knownS === null ? fitTwo(spectrum, a, b) : fitDelta(spectrum, a, b, knownS);
-  const drifting = fitWithDrift(spectrum, a, b, still, knownS);
+  const drifting = spectrum.displacements >= DRIFT_FROM ? fitWithDrift(spectrum, a, b, still, knownS) : null;
   const relativeError = relativeErrorOf(spectrum, a, b, still, knownS);
   const dispersion = dispersionOf(spectrum, a, b, still);
-  const raw = Math.max(0, still.minus2LogL - drifting.fit.minus2LogL);
+  const raw = drifting ? Math.max(0, still.minus2LogL - drifting.fit.minus2LogL) : 0;
   const driftStatistic = raw / (1 + 1.8 * Math.min(relativeError, 1) ** 2) / dispersion;
   const driftThreshold = CHI2_975[spectrum.dims - 1]!;
   const driftSignificant = driftStatistic > driftThreshold;
-  const driftRemoved = settings.drift === 'remove' || (settings.drift === 'auto' && driftSignificant);
-  const used = driftRemoved ? drifting.spectrum : spectrum;
-  const fit = driftRemoved ? drifting.fit : still;
+  const asked = settings.drift === 'remove' || (settings.drift === 'auto' && driftSignificant);
+  const removed = asked ? drifting : null;
+  const { spectrum: used, fit } = removed ?? { spectrum, fit: still };
   return {
     a,
     b,
@@ -69,14 +72,14 @@ export function fitFree(spectrum: Spectrum, blurFraction: number, settings: Anal
     driftStatistic,
     driftThreshold,
     driftSignificant,
-    driftRemoved,
+    driftRemoved: removed !== null,
     motionStatistic: motionStatistic(used, a, b, fit, knownS) / dispersion,
   };
 }
 
 /** The spectrum and the fit that everything after the drift decision rests on. */
 export function chosen(spectrum: Spectrum, free: FreeFit): { spectrum: Spectrum; fit: TwoParameterFit } {
-  return free.driftRemoved
+  return free.driftRemoved && free.drifting
     ? { spectrum: free.drifting.spectrum, fit: free.drifting.fit }
     : { spectrum, fit: free.still };
 }
