@@ -92,7 +92,7 @@ export function IntakeDialog({
           {refused}
         </Notice>
       ) : null}
-      <div className="mt-6 flex flex-wrap items-center justify-end gap-3 border-t pt-4">
+      <div className="sticky bottom-0 -mx-6 mt-6 -mb-6 flex flex-wrap items-center justify-end gap-3 border-t bg-page px-6 py-4">
         <Button onClick={onLeave}>{inspection ? 'Not now' : 'Close'}</Button>
         {inspection ? (
           <Button weight="primary" busy={busy || isFetching} disabled={!read} onClick={() => void confirm()}>
@@ -163,8 +163,10 @@ function missingSentence(inspection: Inspection): string {
     timeUnit: 'the unit of time',
     exposure: 'the exposure',
   };
-  const missing = inspection.required.map((one) => words[one]).join(' and ');
-  return `The table was found. The file does not say ${missing}; please state it.`;
+  const missing = inspection.required.map((one) => words[one]);
+  return missing.length > 1
+    ? `The table was found. The file does not say ${missing.slice(0, -1).join(', ')} and ${missing.at(-1)}; please state them.`
+    : `The table was found. The file does not say ${missing.join()}; please state it.`;
 }
 
 function describeDialect({ dialect }: ReadingSpec): string {

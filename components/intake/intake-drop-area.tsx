@@ -125,7 +125,7 @@ export function IntakeDropArea({
     <div className="relative">
       {children}
       {editable ? (
-        <div className="mt-4 print:hidden">
+        <div className="mt-4 mb-8 print:hidden">
           <input
             ref={input}
             type="file"
