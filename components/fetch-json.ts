@@ -4,14 +4,19 @@ import { RefusedError } from './query-provider';
 
 /**
  * Asks one of the product's own routes and checks the answer's shape.
- * @throws RefusedError - the server's sentence, ready to be shown; also when no server could be reached.
+ * @throws RefusedError - the server's sentence, ready to be shown; also when no server could be reached, and when the
+ * answer is not what this page understands (the product was renewed while the page was open).
  */
 export async function fetchJson<Shape extends z.ZodType>(
   path: string,
   shape: Shape,
   options: { body?: unknown; signal?: AbortSignal } = {},
 ): Promise<z.output<Shape>> {
-  return shape.parse(await (await send(path, options)).json());
+  const answer: unknown = await (await send(path, options)).json().catch(() => null);
+  const parsed = shape.safeParse(answer);
+  if (parsed.success) return parsed.data;
+  console.error(`answer of ${path} not understood`, parsed.error);
+  throw new RefusedError(502, 'This page and the server do not fit together any more. Reload the page.', {});
 }
 
 /** The same for an answer that is a file. */

@@ -1,6 +1,7 @@
 'use client';
 
 import { useId, useState, type ReactNode } from 'react';
+import { z } from 'zod';
 import { Button } from '@/components/ui/button';
 import { classes } from '@/components/ui/classes';
 import {
@@ -16,9 +17,17 @@ import { countRestrictions, type UrlFaults } from './filters-in-url';
 import { SpanFields, type SpanKind } from './span-fields';
 import type { FilterChange } from './use-filters';
 
+/** "0,43" is read as it is meant, as in a block's settings; "1,234" could be two numbers and stays refused. */
+const typedBound = z
+  .string()
+  .transform((text) =>
+    /^\s*([1-9]\d{0,2}),\d{3}\s*$/.test(text) ? text : text.replace(/^(\s*\d*),(\d+)/, '$1.$2'),
+  )
+  .pipe(boundOfD);
+
 const ofD: SpanKind<number> = {
   type: 'text',
-  shape: boundOfD,
+  shape: typedBound,
   write: String,
   reversed: RANGE_REVERSED,
   incomplete: 'Enter a number.',

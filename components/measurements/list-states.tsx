@@ -133,7 +133,7 @@ export function Failed({ error, onRetry, isBusy }: { error: Error; onRetry: () =
     >
       {isSignedOut
         ? 'The question stays in the address of this page.'
-        : `${error instanceof RefusedError ? error.sentence : `${ERRORS.unexpected.sentence} The answer could not be read.`} Your filters are kept.`}
+        : `${error instanceof RefusedError ? error.sentence : ERRORS.unexpected.sentence} Your filters are kept.`}
     </Notice>
   );
 }

@@ -218,9 +218,17 @@ describe('asking for a range of D', () => {
     expect(field(TO).value).toBe('0.60');
   });
 
+  test('a decimal comma is read as it is meant', async () => {
+    await open();
+    await type(field(TO), '0,62');
+    await pass(500);
+    expect(window.location.search).toBe('?dTo=0.62');
+    expect(field(TO).value).toBe('0,62');
+  });
+
   test.each([
     ['abc', 'Enter a number in µm²/s, such as 0.43 or 2e-3.'],
-    ['0,43', 'Write the decimal with a point, as in 0.43.'],
+    ['1,234', 'Write the decimal with a point, as in 0.43.'],
     ['-1', 'D is never negative. Enter zero or more.'],
   ])('%s is not applied, stays, and is explained', async (text, message) => {
     await open('?dTo=2');
@@ -369,7 +377,7 @@ describe('when there is nothing to show', () => {
     answer = () => ({ body: { rows: [{ title: 'only a title' }] } });
     await open();
     await pass(10_000);
-    expect(home.textContent).toContain('The answer could not be read.');
+    expect(home.textContent).toContain('do not fit together any more. Reload the page.');
     expect(home.querySelector('tbody')).toBeNull();
   });
 });
