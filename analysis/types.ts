@@ -23,6 +23,8 @@ export interface Trajectories {
   readonly axes: readonly Float64Array[];
   /** Frame interval in seconds: stated, or null when it follows from `time`. */
   readonly frameInterval: number | null;
+  /** Pixel of the camera in the sample, micrometres, where positions were measured in pixels. */
+  readonly pixelSize?: number | null;
   /** Exposure of one frame, or null when not stated (then taken as 0, with a warning). */
   readonly exposure: Exposure | null;
 }
@@ -81,10 +83,19 @@ export interface Warning {
   readonly message: string;
 }
 
+/** A question asked of every data set, with its answer in a sentence. */
+export interface Check {
+  readonly code: string;
+  readonly level: 'fine' | 'look' | 'problem';
+  /** Probability of a worse value by chance; null where no such number belongs to it. */
+  readonly p: number | null;
+  readonly message: string;
+}
+
 /** How many of something were left out before any statistics, and why. */
 export interface Exclusion {
   readonly reason: string;
-  readonly what: 'rows' | 'tracks' | 'axes';
+  readonly what: 'rows' | 'tracks' | 'axes' | 'displacements';
   readonly count: number;
 }
 
@@ -132,6 +143,43 @@ export interface Drift {
   readonly removed: boolean;
 }
 
+/**
+ * Size of a confinement. All follow from the standard deviation of the positions per axis, so that each shape can be
+ * stated from one fit: a box (a square, a cube) is √12 of it wide, a circle has a radius of 2, a sphere of √5 of it.
+ */
+export interface Confinement {
+  /** What the positions say of the boundary: flat walls, a harmonic well, or too little to tell. */
+  readonly boundary: 'walls' | 'well' | 'unclear';
+  /** Excess kurtosis of the positions per axis about the middle of their track: −1.2 for walls, 0 for a well; or null. */
+  readonly kurtosis: number | null;
+  /** Box-equivalent width, µm. */
+  readonly width: Estimate;
+  readonly circleRadius: Estimate;
+  readonly sphereRadius: Estimate;
+  /** 1/κ: after a few of these the particle has forgotten where it was; seconds. */
+  readonly relaxationTime: Estimate;
+}
+
+/** A model that was held against free diffusion, and how well it did. */
+export interface ModelFit {
+  readonly name: 'drift' | 'anomalous' | 'confined' | 'individual';
+  /** −2 ln likelihood ratio against free diffusion, divided by the dispersion; 0 when it is no better. */
+  readonly statistic: number;
+  /** µm²/s of this model; null where it has none. */
+  readonly D: number | null;
+  /** α; relaxation time (s); speed (µm/s), by the model's name. */
+  readonly parameter: number;
+}
+
+/** Motion that all tracks share from frame to frame, as a stage gives. */
+export interface SharedMotion {
+  /** Of the stage's random walk, µm²/s; its steady drift is under `drift`. */
+  readonly D: number;
+  /** In standard errors; above 3.3 it is taken to be there. */
+  readonly z: number;
+  readonly removed: boolean;
+}
+
 /** Size from D, or viscosity from D, or expected D; each null unless its inputs were given. */
 export interface StokesEinstein {
   /** Viscosity of the medium at the temperature, millipascal seconds. */
@@ -160,10 +208,26 @@ export interface AnalysisResult {
   /** One plain sentence that says what the verdict means here. */
   readonly sentence: string;
   readonly drift: Drift | null;
-  /** Anomalous exponent, once the engine fits it. */
+  /** Anomalous exponent of the best such model, whatever the verdict; null when no motion is resolved. */
   readonly alpha: Estimate | null;
+  /** MSD = 2·dims·K·t^α: K in µm²/s^α; null unless anomalous. */
+  readonly K: Estimate | null;
   /** Box-equivalent width of a confinement, micrometres; null unless confined. */
   readonly L: Estimate | null;
+  readonly confinement: Confinement | null;
+  /** Confinement in a box narrower than this is excluded, µm; null when nothing can be excluded. */
+  readonly excludedWidth: number | null;
+  /** Root-mean-square speed, µm/s, of tracks that run in directions of their own; null unless that is the verdict. */
+  readonly individualSpeed: Estimate | null;
+  /** What free diffusion was held against, best first. */
+  readonly models: readonly ModelFit[];
+  /** By how much displacements scatter more than one D explains, 1 when not; statistics are divided by it. */
+  readonly dispersion: number;
+  readonly sharedMotion: SharedMotion | null;
+  /** Tracks were cut where a displacement was too long for one particle. */
+  readonly mislinks: number;
+  /** Gaps that were bridged for the verdict only. */
+  readonly gapsFilled: number;
   readonly dims: number;
   readonly frameInterval: number | null;
   /** Exposure as a fraction of the frame interval that was used, and whether anybody stated it. */
@@ -180,6 +244,7 @@ export interface AnalysisResult {
   readonly lineFit: LineFit | null;
   readonly stokesEinstein: StokesEinstein | null;
   readonly warnings: readonly Warning[];
+  readonly checks: readonly Check[];
   readonly exclusions: readonly Exclusion[];
 }
 

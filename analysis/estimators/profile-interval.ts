@@ -18,6 +18,7 @@ export interface ProfileInterval {
  * 95 % interval of δ = D·Δt by profile likelihood: {δ : −2lnL(δ, best s) − min ≤ 3.84}. Honest for few data, where
  * the usual ± 1.96 standard errors are too short (Berglund 2010, Phys. Rev. E 82:011917).
  * @param knownS - σ² when it is not fitted, µm².
+ * @param room - how far −2lnL may rise above that of `best`; 3.84 unless `best` is not the best of all.
  */
 export function profileInterval(
   spectrum: Spectrum,
@@ -25,6 +26,7 @@ export function profileInterval(
   b: Shape,
   best: TwoParameterFit,
   knownS: number | null,
+  room = CHI2_95_ONE,
 ): ProfileInterval {
   let near = best.s;
   const profile = (delta: number): TwoParameterFit => {
@@ -35,7 +37,7 @@ export function profileInterval(
     near = fit.s;
     return fit;
   };
-  const excess = (logDelta: number) => profile(Math.exp(logDelta)).minus2LogL - best.minus2LogL - CHI2_95_ONE;
+  const excess = (logDelta: number) => profile(Math.exp(logDelta)).minus2LogL - best.minus2LogL - room;
   const centre = best.delta > 0 ? Math.log(best.delta) : Math.log(scaleOf(spectrum)) - 12;
   const lo = best.delta > 0 ? edge(excess, centre, -1) : null;
   const sLo = lo === null ? best.s : profile(Math.exp(lo)).s;

@@ -10,6 +10,8 @@ export interface Track {
   readonly start: number;
   /** Frames of the positions, relative to `start`, strictly ascending. */
   readonly frames: Int32Array;
+  /** First position as measured, micrometres, one an axis. */
+  readonly origin: readonly number[];
   /** Positions relative to the first one, micrometres; one array an axis. */
   readonly axes: readonly Float64Array[];
 }
@@ -260,6 +262,7 @@ function finish(track: RawTrack, axes: readonly number[]): Track {
     id: track.id,
     start: track.start,
     frames: track.frames,
+    origin: axes.map((axis) => track.axes[axis]?.[0] ?? 0),
     axes: axes.map((axis) => {
       const column = track.axes[axis] ?? new Float64Array(track.frames.length);
       const first = column[0]!;

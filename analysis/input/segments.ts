@@ -1,4 +1,4 @@
-import type { Track } from './prepare';
+import { CUT, type Steps } from './steps';
 
 /** Displacements of a run of consecutive frames: one array an axis, micrometres, all of the same length ≥ 1. */
 export interface Segment {
@@ -13,27 +13,21 @@ export interface Segment {
 export const LONGEST_SERIES = 16_384;
 
 /** Cuts tracks at their gaps. A displacement exists only between frames f and f + 1 that are both present. */
-export function segmentsOf(tracks: readonly Track[]): { segments: Segment[]; gaps: number } {
+export function segmentsOf(steps: readonly Steps[]): { segments: Segment[]; gaps: number } {
   const segments: Segment[] = [];
   let gaps = 0;
-  for (const [index, track] of tracks.entries()) {
+  for (const { track, gap, axes } of steps) {
     let start = 0;
-    for (let i = 1; i <= track.frames.length; i++) {
-      const goesOn = i < track.frames.length && track.frames[i]! === track.frames[i - 1]! + 1;
-      if (goesOn && i - start <= LONGEST_SERIES) continue;
-      if (i < track.frames.length && !goesOn) gaps += 1;
-      if (i - start >= 2)
-        segments.push({ track: index, displacements: track.axes.map((axis) => differences(axis, start, i)) });
-      start = i;
+    for (let i = 0; i <= gap.length; i++) {
+      const goesOn = i < gap.length && gap[i] === 1 && i - start < LONGEST_SERIES;
+      if (goesOn) continue;
+      if (i < gap.length && gap[i] !== 1 && gap[i] !== CUT) gaps += 1;
+      if (i > start) segments.push({ track, displacements: axes.map((axis) => axis.slice(start, i)) });
+      // A series that is only too long goes on with the displacement after the one that is left out here.
+      start = i + 1;
     }
   }
   return { segments, gaps };
-}
-
-function differences(axis: Float64Array, start: number, end: number): Float64Array {
-  const steps = new Float64Array(end - start - 1);
-  for (let i = 0; i < steps.length; i++) steps[i] = axis[start + i + 1]! - axis[start + i]!;
-  return steps;
 }
 
 /** Positions are written with a few digits, so equal displacements differ by rounding: this part of their mean square. */

@@ -93,6 +93,7 @@ export class RowCollector {
       axes: this.axes.map((axis) => Float64Array.from(axis.values)),
       // Measured times say more than a rounded statement that agrees with them.
       frameInterval: timed || frameInterval === null ? null : Number(frameInterval),
+      pixelSize: this.spec.pixelSize === null ? null : Number(this.spec.pixelSize),
       exposure: exposureOf(this.spec),
     };
   }

@@ -34,20 +34,37 @@ export function msdVariance(m: ModelMsd, positions: number, lag: number, dims: n
   return (2 * dims * total) / (k * k);
 }
 
+/** Pairs beyond which the full sum over all pairs of pairs would take too long. */
+const LONGEST_SUM = 2000;
+
+type ErrorOf = (m: ModelMsd, trackPairs: Int32Array, lag: number, dims: number) => number;
+
 /**
  * Standard error of the ensemble MSD at one lag: tracks are independent and weigh by their pairs. A track with gaps
  * counts as an unbroken one with as many pairs, which is right to first order.
  */
-export function ensembleError(m: ModelMsd, trackPairs: Int32Array, lag: number, dims: number): number {
-  const byPairs = new Map<number, number>();
-  let all = 0;
-  for (const pairs of trackPairs) {
-    if (pairs === 0) continue;
-    byPairs.set(pairs, (byPairs.get(pairs) ?? 0) + 1);
-    all += pairs;
-  }
-  let total = 0;
-  for (const [pairs, tracks] of byPairs)
-    total += tracks * pairs * pairs * msdVariance(m, pairs + lag, lag, dims);
-  return Math.sqrt(total) / all;
+export const freeError: ErrorOf = ensembleError(msdVariance);
+
+/** The same for any model: the full sum, over at most this many pairs of a track. */
+export const generalError: ErrorOf = ensembleError((m, positions, lag, dims) => {
+  const most = LONGEST_SUM + lag;
+  const shortened = msdCovariance(m, Math.min(positions, most), lag, lag, dims);
+  // Beyond many correlation times the variance falls as one over the pairs.
+  return positions <= most ? shortened : (shortened * LONGEST_SUM) / (positions - lag);
+});
+
+function ensembleError(variance: typeof msdVariance): ErrorOf {
+  return (m, trackPairs, lag, dims) => {
+    const byPairs = new Map<number, number>();
+    let all = 0;
+    for (const pairs of trackPairs) {
+      if (pairs === 0) continue;
+      byPairs.set(pairs, (byPairs.get(pairs) ?? 0) + 1);
+      all += pairs;
+    }
+    let total = 0;
+    for (const [pairs, tracks] of byPairs)
+      total += tracks * pairs * pairs * variance(m, pairs + lag, lag, dims);
+    return Math.sqrt(total) / all;
+  };
 }

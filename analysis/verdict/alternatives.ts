@@ -1,10 +1,17 @@
 import { CHI2_95_ONE } from '../estimators/profile-interval';
 import { fitDelta, fitTwo, type Shape, type TwoParameterFit } from '../estimators/likelihood';
 import { findRoot, minimise } from '../fit/minimise';
-import { anomalousMsd, confinedMsd, displacementCovariance, type MsdFunction } from '../spectrum/models';
+import {
+  anomalousMsd,
+  boxMsd,
+  confinedMsd,
+  displacementCovariance,
+  type MsdFunction,
+} from '../spectrum/models';
 import { driftSpectrum, stationarySpectrum } from '../spectrum/sine-transform';
 import type { Spectrum } from '../spectrum/spectrum';
 import type { Estimate } from '../types';
+import type { ShapedModel } from './region';
 
 /** A model with one shape parameter beside D and σ², fitted to the same spectrum as the free model. */
 export interface AlternativeFit {
@@ -13,6 +20,8 @@ export interface AlternativeFit {
   readonly fit: TwoParameterFit;
   /** −2 ln likelihood ratio against the free model, divided by the dispersion, at least 0. */
   readonly statistic: number;
+  /** For intervals; its parameter is α, or the logarithm of q or ω. */
+  readonly model: ShapedModel;
 }
 
 export interface AnomalousFit extends AlternativeFit {
@@ -24,7 +33,10 @@ export interface AnomalousFit extends AlternativeFit {
 
 export interface Alternatives {
   readonly anomalous: AnomalousFit;
+  /** Harmonic well: the confinement that the verdict is found with. */
   readonly confined: AlternativeFit;
+  /** Reflecting walls, whose spectrum nearly equals that of a well: fitted when a size is to be stated. */
+  readonly walls: () => AlternativeFit;
   /** Individual velocities; null for a single track, where they are a common drift. */
   readonly individual: AlternativeFit | null;
 }
@@ -51,6 +63,9 @@ export function fitAlternatives(input: AlternativeInput): Alternatives {
     confined: fitShape(input, logGrid(0.3 / longest, 6, 16), (q) =>
       shapeOf(input, confinedMsd(q, input.blurFraction)),
     ),
+    // For the same size q is π²/12 of that of a well.
+    walls: () =>
+      fitShape(input, logGrid(0.25 / longest, 5, 16), (q) => shapeOf(input, boxMsd(q, input.blurFraction))),
     individual:
       input.tracks >= 2
         ? fitShape(input, logGrid(0.02 / longest, 30, 14), (omega) => velocityShape(input, omega))
@@ -59,42 +74,64 @@ export function fitAlternatives(input: AlternativeInput): Alternatives {
 }
 
 function fitAnomalous(input: AlternativeInput): AnomalousFit {
-  const at = memory((alpha: number) =>
-    fitShapeOnce(input, shapeOf(input, anomalousMsd(alpha, input.blurFraction))),
-  );
-  const f = (alpha: number) => at(alpha).minus2LogL;
   const grid = Array.from(
     { length: 20 },
     (_, i) => ALPHA_LOWEST + (0.1 * i * (ALPHA_HIGHEST - ALPHA_LOWEST)) / 1.9,
   );
-  const best = polish(f, grid, 1e-7);
-  const relative = (alpha: number) => Math.max(0, f(alpha) - best.value) / input.dispersion;
+  const found = fitOver(input, grid, 1e-7, (alpha) =>
+    shapeOf(input, anomalousMsd(alpha, input.blurFraction)),
+  );
+  const f = (alpha: number) => found.model.fitAt(alpha).minus2LogL;
+  const { best } = found.model;
+  const relative = (alpha: number) => Math.max(0, f(alpha) - found.fit.minus2LogL) / input.dispersion;
   const beyond = (alpha: number) => relative(alpha) - CHI2_95_ONE;
   return {
-    shape: best.x,
-    fit: at(best.x),
-    statistic: Math.max(0, input.free.minus2LogL - best.value) / input.dispersion,
+    ...found,
+    shape: best,
     alpha: {
-      value: best.x,
-      lo: beyond(ALPHA_LOWEST) > 0 ? findRoot(beyond, ALPHA_LOWEST, best.x, 1e-6) : null,
-      hi: beyond(ALPHA_HIGHEST) > 0 ? findRoot(beyond, best.x, ALPHA_HIGHEST, 1e-6) : null,
+      value: best,
+      lo: beyond(ALPHA_LOWEST) > 0 ? findRoot(beyond, ALPHA_LOWEST, best, 1e-6) : null,
+      hi: beyond(ALPHA_HIGHEST) > 0 ? findRoot(beyond, best, ALPHA_HIGHEST, 1e-6) : null,
     },
     statisticAtHalf: relative(0.5),
     statisticAtOneAndHalf: relative(1.5),
   };
 }
 
+/** Searches over the logarithm of a positive parameter. */
 function fitShape(
   input: AlternativeInput,
   grid: readonly number[],
   shape: (x: number) => Shape,
 ): AlternativeFit {
-  const f = memory((logX: number) => fitShapeOnce(input, shape(Math.exp(logX))));
-  const best = polish((x) => f(x).minus2LogL, grid.map(Math.log), 1e-6);
+  const found = fitOver(input, grid.map(Math.log), 1e-6, (logX) => shape(Math.exp(logX)));
+  return { ...found, shape: Math.exp(found.model.best) };
+}
+
+function fitOver(
+  input: AlternativeInput,
+  grid: readonly number[],
+  tolerance: number,
+  shape: (p: number) => Shape,
+): Omit<AlternativeFit, 'shape'> {
+  const shapeAt = memory(shape);
+  const fitAt = memory((p: number) => fitShapeOnce(input, shapeAt(p)));
+  const best = polish((p) => fitAt(p).minus2LogL, grid, tolerance);
+  const model: ShapedModel = {
+    spectrum: input.spectrum,
+    b: input.b,
+    knownS: input.knownS,
+    dispersion: input.dispersion,
+    shapeAt,
+    fitAt,
+    best: best.x,
+    lowest: grid[0]!,
+    highest: grid.at(-1)!,
+  };
   return {
-    shape: Math.exp(best.x),
-    fit: f(best.x),
+    fit: fitAt(best.x),
     statistic: Math.max(0, input.free.minus2LogL - best.value) / input.dispersion,
+    model,
   };
 }
 
@@ -137,7 +174,7 @@ function polish(
   return found.value <= values[best]! ? found : { x: grid[best]!, value: values[best]! };
 }
 
-/** Remembers the fits of one search: the interval asks for points that the search has visited. */
+/** Remembers the answers of one search: the interval asks for points that the search has visited. */
 function memory<T>(f: (x: number) => T): (x: number) => T {
   const known = new Map<number, T>();
   return (x) => {

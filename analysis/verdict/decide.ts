@@ -2,6 +2,9 @@ import type { Verdict } from '../types';
 import type { Alternatives } from './alternatives';
 import type { FreeFit } from './free-fit';
 
+/** What free diffusion is held against. "drift": the one direction of a single track. */
+export type Rival = 'anomalous' | 'confined' | 'individual' | 'drift';
+
 /**
  * The verdict with its ground. Thresholds were calibrated by simulation so that free data are called something else in
  * at most 5 % of cases, at every size of data set.
@@ -9,45 +12,71 @@ import type { FreeFit } from './free-fit';
 export interface Decision {
   readonly verdict: Verdict;
   readonly ground:
-    'free' | 'common-drift' | 'departs' | 'cannot-exclude' | 'no-motion' | 'two-point-tracks' | 'imprecise';
+    | 'free'
+    | 'common-drift'
+    | 'departs'
+    | 'departs-unclear'
+    | 'cannot-exclude'
+    | 'no-motion'
+    | 'two-point-tracks'
+    | 'imprecise';
   /** Largest test statistic against free diffusion, and its threshold. */
   readonly departure: number;
   readonly departureThreshold: number;
-  /** What the data look like when they depart: the alternative with the largest statistic. */
-  readonly resembles: 'anomalous' | 'confined' | 'individual' | 'drift' | null;
+  /** What the data look like when they depart, most likely first; one when it is clear. */
+  readonly rivals: readonly Rival[];
+  /** Whether a common drift of several tracks was found beside. */
+  readonly withDrift: boolean;
 }
 
 /** 5 %, one-sided at the boundary: below this, motion is not resolved above the localisation error. */
 const MOTION_RESOLVED = 2.71;
 /** Equivalence test (Schuirmann 1987, J. Pharmacokinet. Biopharm. 15:657): both ends must be excluded at 5 %. */
 const ENDS_EXCLUDED = 2.71;
+/** The best model must beat the second by this much in −2 ln L: about e² to 1 in likelihood, as an information criterion asks. */
+const CLEARLY_BETTER = 2;
 
+/** @param free - fitted to what is judged: filled gaps, shared motion taken off.   @param tracks - how many there are. */
 export function decide(free: FreeFit, alternatives: Alternatives | null, tracks: number): Decision {
   const departureThreshold = tracks === 1 ? 5.9 : 6.3;
-  const none = { departure: 0, departureThreshold, resembles: null };
+  const none = { departure: 0, departureThreshold, rivals: [], withDrift: false };
   if (alternatives === null) return { verdict: 'undecided', ground: 'two-point-tracks', ...none };
   if (free.motionStatistic <= MOTION_RESOLVED) return { verdict: 'undecided', ground: 'no-motion', ...none };
 
-  const candidates = [
+  const shapes: [Rival, number][] = [
     ['anomalous', alternatives.anomalous.statistic],
     ['confined', alternatives.confined.statistic],
     ['individual', alternatives.individual?.statistic ?? 0],
-  ] as const;
-  const [name, departure] = candidates.reduce((best, one) => (one[1] > best[1] ? one : best));
-  if (departure > departureThreshold) {
-    return { verdict: 'undecided', ground: 'departs', departure, departureThreshold, resembles: name };
+  ];
+  const departure = Math.max(...shapes.map(([, statistic]) => statistic));
+  const common = { departure, departureThreshold, withDrift: tracks > 1 && free.driftSignificant };
+  const lone = tracks === 1 && free.driftSignificant;
+  if (departure > departureThreshold || lone) {
+    // A drift has one number an axis where the others have one in all.
+    const scores: [Rival, number][] =
+      tracks === 1 ? [...shapes.slice(0, 2), ['drift', free.driftStatistic - 2 * (free.dims - 1)]] : shapes;
+    const order = scores.filter(([, score]) => score > 0).sort((a, b) => b[1] - a[1]);
+    const [best, second] = order;
+    if (best && (!second || best[1] >= second[1] + CLEARLY_BETTER)) {
+      return { verdict: verdictOf(best[0]), ground: 'departs', ...common, rivals: [best[0]] };
+    }
+    return {
+      verdict: 'undecided',
+      ground: 'departs-unclear',
+      ...common,
+      rivals: order.slice(0, 2).map(([rival]) => rival),
+    };
   }
-  const common = { departure, departureThreshold, resembles: null };
-  if (free.driftSignificant) {
-    // One track cannot tell a flow from a persistent walk, so a drift of one track is a departure, not yet a verdict.
-    if (tracks === 1) return { verdict: 'undecided', ground: 'departs', ...common, resembles: 'drift' };
-    return { verdict: 'directed', ground: 'common-drift', ...common };
-  }
+  if (free.driftSignificant) return { verdict: 'directed', ground: 'common-drift', ...common, rivals: [] };
   const { alpha, statisticAtHalf, statisticAtOneAndHalf } = alternatives.anomalous;
   const nearOne = alpha.value > 0.5 && alpha.value < 1.5;
   if (nearOne && statisticAtHalf >= ENDS_EXCLUDED && statisticAtOneAndHalf >= ENDS_EXCLUDED) {
-    if (free.relativeError < 0.5) return { verdict: 'free', ground: 'free', ...common };
-    return { verdict: 'undecided', ground: 'imprecise', ...common };
+    if (free.relativeError < 0.5) return { verdict: 'free', ground: 'free', ...common, rivals: [] };
+    return { verdict: 'undecided', ground: 'imprecise', ...common, rivals: [] };
   }
-  return { verdict: 'undecided', ground: 'cannot-exclude', ...common };
+  return { verdict: 'undecided', ground: 'cannot-exclude', ...common, rivals: [] };
+}
+
+function verdictOf(rival: Rival): Verdict {
+  return rival === 'individual' || rival === 'drift' ? 'directed' : rival;
 }

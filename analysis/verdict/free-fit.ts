@@ -7,6 +7,7 @@ import {
   type Shape,
   type TwoParameterFit,
 } from '../estimators/likelihood';
+import type { CommonMotion } from '../input/common-motion';
 import { profileInterval, type ProfileInterval } from '../estimators/profile-interval';
 import { displacementCovariance, freeMsd } from '../spectrum/models';
 import { stationarySpectrum } from '../spectrum/sine-transform';
@@ -15,6 +16,7 @@ import type { AnalysisSettings } from '../types';
 
 /** The free model with and without a common drift, and how far the drift can be believed. */
 export interface FreeFit {
+  readonly dims: number;
   /** Shapes of the spectrum: diffusion a, localisation error b. */
   readonly a: Shape;
   readonly b: Shape;
@@ -31,6 +33,8 @@ export interface FreeFit {
   readonly driftStatistic: number;
   readonly driftThreshold: number;
   readonly driftSignificant: boolean;
+  /** Standard error of the drift per axis and frame, µm: the stage's own random walk makes it wider. */
+  readonly driftError: number;
   /** Whether the drift is taken off in what follows. */
   readonly driftRemoved: boolean;
   /** Likelihood-ratio statistic of "some motion" against "localisation error only", divided by φ. */
@@ -44,7 +48,13 @@ const DRIFT_FROM = 4;
 /** Fewer coefficients than this say too little about their own spread. */
 const DISPERSION_FROM = 200;
 
-export function fitFree(spectrum: Spectrum, blurFraction: number, settings: AnalysisSettings): FreeFit {
+/** @param common - shared motion that was taken off; its mean stayed and adds to the chance of a drift. */
+export function fitFree(
+  spectrum: Spectrum,
+  blurFraction: number,
+  settings: AnalysisSettings,
+  common: CommonMotion | null = null,
+): FreeFit {
   const a = freeShape(spectrum, blurFraction);
   const b = noiseShape(spectrum);
   const single = spectrum.groups.every((group) => group.length === 1);
@@ -55,13 +65,14 @@ export function fitFree(spectrum: Spectrum, blurFraction: number, settings: Anal
   const relativeError = relativeErrorOf(spectrum, a, b, still, knownS);
   const dispersion = dispersionOf(spectrum, a, b, still);
   const raw = drifting ? Math.max(0, still.minus2LogL - drifting.fit.minus2LogL) : 0;
-  const driftStatistic = raw / (1 + 1.8 * Math.min(relativeError, 1) ** 2) / dispersion;
+  const own = drifting ? drifting.se ** 2 : 0;
+  const stage = common?.present ? Math.max(0, common.variance) / common.frames : 0;
+  const widening = own > 0 ? own / (own + stage) : 1;
+  const driftStatistic = (raw * widening) / (1 + 1.8 * Math.min(relativeError, 1) ** 2) / dispersion;
   const driftThreshold = CHI2_975[spectrum.dims - 1]!;
   const driftSignificant = driftStatistic > driftThreshold;
-  const asked = settings.drift === 'remove' || (settings.drift === 'auto' && driftSignificant);
-  const removed = asked ? drifting : null;
-  const { spectrum: used, fit } = removed ?? { spectrum, fit: still };
-  return {
+  const free = {
+    dims: spectrum.dims,
     a,
     b,
     knownS,
@@ -72,8 +83,27 @@ export function fitFree(spectrum: Spectrum, blurFraction: number, settings: Anal
     driftStatistic,
     driftThreshold,
     driftSignificant,
+    driftError: Math.sqrt(own + stage),
+    driftRemoved: false,
+    motionStatistic: 0,
+  };
+  return withDriftDecided(spectrum, free, driftSignificant, settings);
+}
+
+/** The same fit with the drift taken off or not, as a test on other spectra of the same data found. */
+export function withDriftDecided(
+  spectrum: Spectrum,
+  free: FreeFit,
+  significant: boolean,
+  settings: AnalysisSettings,
+): FreeFit {
+  const asked = settings.drift === 'remove' || (settings.drift === 'auto' && significant);
+  const removed = asked ? free.drifting : null;
+  const { spectrum: used, fit } = removed ?? { spectrum, fit: free.still };
+  return {
+    ...free,
     driftRemoved: removed !== null,
-    motionStatistic: motionStatistic(used, a, b, fit, knownS) / dispersion,
+    motionStatistic: motionStatistic(used, free.a, free.b, fit, free.knownS) / free.dispersion,
   };
 }
 

@@ -1,5 +1,5 @@
 import type { Prepared } from '../input/prepare';
-import type { AnalysisSettings, Drift, Trajectories, Warning } from '../types';
+import type { AnalysisSettings, Drift, SharedMotion, Trajectories, Warning } from '../types';
 import type { Spectrum } from '../spectrum/spectrum';
 import { WATER_HIGHEST, WATER_LOWEST } from '../physics/water';
 import type { Decision } from './decide';
@@ -16,6 +16,10 @@ export interface WarningFacts {
   readonly drift: Drift | null;
   readonly sigmaSquared: { readonly value: number; readonly se: number | null };
   readonly fittedSigma: boolean;
+  readonly mislinks: number;
+  readonly sharedMotion: SharedMotion | null;
+  /** Displacements of frames in which one track is alone, lost when shared motion is taken off. */
+  readonly alone: number;
 }
 
 /** What a careful colleague would remark about this result: each with what it means and what to do. */
@@ -59,6 +63,28 @@ export function resultWarnings(facts: WarningFacts): Warning[] {
     look(
       'spread-too-wide',
       'Displacements scatter more than one diffusion coefficient explains: there may be several kinds of particle. D is their average, and its interval may be too short.',
+    );
+  }
+  if (facts.mislinks > 0) {
+    look(
+      'mislinks',
+      `${facts.mislinks === 1 ? 'A displacement is' : `${facts.mislinks} displacements are`} too long for the same particle; the track was cut there. Check how positions were joined into tracks.`,
+    );
+  }
+  if (facts.sharedMotion?.removed) {
+    look(
+      'shared-motion',
+      `All tracks shake together from frame to frame, as a moving stage makes them; that was taken off.${facts.alone > 0 ? ` ${facts.alone} displacements without company could not be corrected and were left out.` : ''}`,
+    );
+  }
+  if (
+    facts.decision.rivals[0] === 'anomalous' &&
+    facts.decision.ground === 'departs' &&
+    prepared.tracks.length === 1
+  ) {
+    look(
+      'persistence-or-drift',
+      'One short track hardly separates persistent or hindered motion from a drift or a wall. More tracks would.',
     );
   }
   if (drift?.significant && prepared.tracks.length > 1) {

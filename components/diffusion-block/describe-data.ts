@@ -13,7 +13,7 @@ export function describeData(result: AnalysisResult): string {
   return `${parts.join(', ')}.`;
 }
 
-const ONE = { rows: 'row', tracks: 'track', axes: 'axis' } as const;
+const ONE = { rows: 'row', tracks: 'track', axes: 'axis', displacements: 'displacement' } as const;
 
 /** What was left out of it and why, one line each: "12 rows left out: position not readable". */
 export function describeExclusions(result: AnalysisResult): string[] {

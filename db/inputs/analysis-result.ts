@@ -54,6 +54,15 @@ const drift = z.object({
   removed: z.boolean(),
 });
 
+const confinement = z.object({
+  boundary: z.enum(['walls', 'well', 'unclear']),
+  kurtosis: z.number().nullable(),
+  width: estimate,
+  circleRadius: estimate,
+  sphereRadius: estimate,
+  relaxationTime: estimate,
+});
+
 export const analysisResult: z.ZodType<AnalysisResult> = z.object({
   engine: z.string(),
   readingHashes: z.array(z.string()),
@@ -65,7 +74,23 @@ export const analysisResult: z.ZodType<AnalysisResult> = z.object({
   sentence: z.string(),
   drift: drift.nullable(),
   alpha: estimate.nullable(),
+  K: estimate.nullable(),
   L: estimate.nullable(),
+  confinement: confinement.nullable(),
+  excludedWidth: z.number().nullable(),
+  individualSpeed: estimate.nullable(),
+  models: z.array(
+    z.object({
+      name: z.enum(['drift', 'anomalous', 'confined', 'individual']),
+      statistic: z.number(),
+      D: z.number().nullable(),
+      parameter: z.number(),
+    }),
+  ),
+  dispersion: z.number(),
+  sharedMotion: z.object({ D: z.number(), z: z.number(), removed: z.boolean() }).nullable(),
+  mislinks: count,
+  gapsFilled: count,
   dims: count,
   frameInterval: z.number().nullable(),
   exposureFraction: z.number(),
@@ -86,7 +111,17 @@ export const analysisResult: z.ZodType<AnalysisResult> = z.object({
     })
     .nullable(),
   warnings: z.array(z.object({ code: z.string(), level: z.enum(['look', 'problem']), message: z.string() })),
-  exclusions: z.array(z.object({ reason: z.string(), what: z.enum(['rows', 'tracks', 'axes']), count })),
+  checks: z.array(
+    z.object({
+      code: z.string(),
+      level: z.enum(['fine', 'look', 'problem']),
+      p: z.number().nullable(),
+      message: z.string(),
+    }),
+  ),
+  exclusions: z.array(
+    z.object({ reason: z.string(), what: z.enum(['rows', 'tracks', 'axes', 'displacements']), count }),
+  ),
 });
 
 export const readingSummary: z.ZodType<ReadingSummary> = z.object({

@@ -2,6 +2,7 @@ import { describe, expect, test } from 'vitest';
 import { covarianceEstimate } from '../../analysis/estimators/covariance';
 import { fitLine } from '../../analysis/fit/line';
 import { segmentsOf } from '../../analysis/input/segments';
+import { stepsOf } from '../../analysis/input/steps';
 import { apart, goldenCase, goldenNames, goldenTrajectories, prepared, succeed } from './golden';
 
 describe('the six positions of g00, checked by hand', () => {
@@ -18,7 +19,7 @@ describe('the six positions of g00, checked by hand', () => {
 
   test('the covariance-based estimate is D = 3/5, σ² = 1/2', () => {
     const { tracks } = prepared([goldenTrajectories('g00_hand')]);
-    const found = covarianceEstimate(segmentsOf(tracks).segments, 1, 0)!;
+    const found = covarianceEstimate(segmentsOf(stepsOf(tracks)).segments, 1, 0)!;
     expect(found.D).toBeCloseTo(0.6, 12);
     expect(found.sigmaSquared).toBeCloseTo(0.5, 12);
     expect(found.displacements).toBe(10);
@@ -47,7 +48,7 @@ describe.each(goldenNames)('%s against an independent program', (name) => {
 
   test('the covariance-based estimate agrees to 1e-8', () => {
     const { tracks } = prepared([trajectories]);
-    const found = covarianceEstimate(segmentsOf(tracks).segments, facts.dt_s, facts.R)!;
+    const found = covarianceEstimate(segmentsOf(stepsOf(tracks)).segments, facts.dt_s, facts.R)!;
     expect(found.displacements).toBe(reference.cve.n_displacements);
     expect(apart(found.D, reference.cve.D)).toBeLessThan(1e-8);
     expect(apart(found.sigmaSquared, reference.cve.sigma2, found.D * facts.dt_s)).toBeLessThan(1e-8);

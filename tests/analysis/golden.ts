@@ -38,6 +38,8 @@ export interface GoldenCase {
       readonly se_s2: number;
       readonly drift_used: readonly number[];
     };
+    readonly after_common_mode_removal?: { readonly D_mle: number; readonly se_D: number };
+    readonly quality: { readonly n_outlier_cuts: number; readonly common_mode_z: number };
     readonly decision_prototype: { readonly phi: number; readonly nseg: number; readonly ndisp: number };
   };
 }

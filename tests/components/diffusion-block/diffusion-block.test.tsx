@@ -24,7 +24,7 @@ describe('a result', () => {
     expect(text).toContain(result.sentence);
     expect(text).toContain('40 tracks, 4,000 positions');
     expect(text).toContain(`SHA-256 ${'b'.repeat(12)}…`);
-    expect(text).toContain('Computed by motebook-engine 1 on 2 Mar 2026, 14:05.');
+    expect(text).toContain('Computed by motebook-engine 2 on 2 Mar 2026, 14:05.');
     expect(page.element.querySelector('code')?.textContent).toBe('b'.repeat(64));
     const file = page.element.querySelector<HTMLAnchorElement>('a[download]');
     expect(file?.getAttribute('href')).toBe(`/api/attachments/${id(201)}`);
