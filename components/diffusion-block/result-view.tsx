@@ -6,6 +6,7 @@ import { Quantity } from '@/components/ui/quantity';
 import { VerdictMark } from '@/components/ui/verdict-glyph';
 import { describeData, describeExclusions } from './describe-data';
 import { MsdFigure } from './msd-figure';
+import { RegimeLine } from './regime-line';
 import { SizeLine } from './size-line';
 import { WarningList } from './warning-list';
 
@@ -20,6 +21,8 @@ export function ResultView({ result, outdated }: { result: AnalysisResult; outda
           {outdated ? <span className="label mr-2 text-ochre">◇ of the earlier settings</span> : null}
           {result.D ? (
             <Quantity symbol="D" {...result.D} unit="µm²/s" size="headline" className={dimmed} />
+          ) : result.K ? (
+            <Quantity symbol="K" {...result.K} unit="µm²/s^α" size="headline" className={dimmed} />
           ) : (
             <span className={classes('text-heading text-muted', dimmed)}>No diffusion coefficient</span>
           )}
@@ -33,6 +36,7 @@ export function ResultView({ result, outdated }: { result: AnalysisResult; outda
       </div>
       <div className={dimmed}>
         <p className="mt-1 max-w-measure">{result.sentence}</p>
+        <RegimeLine result={result} />
         <SizeLine result={result} />
         {result.msd ? <MsdFigure result={result} /> : null}
         <div className="small mt-2 space-y-1 text-muted">
@@ -42,7 +46,7 @@ export function ResultView({ result, outdated }: { result: AnalysisResult; outda
           ))}
           <Comparison result={result} />
         </div>
-        <WarningList warnings={result.warnings} />
+        <WarningList remarks={[...result.warnings, ...result.checks]} />
       </div>
     </div>
   );

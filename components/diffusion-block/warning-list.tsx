@@ -1,4 +1,4 @@
-import type { Warning } from '@/analysis/types';
+import type { Check, Warning } from '@/analysis/types';
 import { classes } from '@/components/ui/classes';
 
 const LOOKS = {
@@ -7,9 +7,12 @@ const LOOKS = {
 } as const;
 
 /** What a careful colleague would remark, the grave first; each with a shape and a word, never by colour alone. */
-export function WarningList({ warnings }: { warnings: readonly Warning[] }) {
-  if (warnings.length === 0) return null;
-  const sorted = [...warnings].sort((a, b) => Number(b.level === 'problem') - Number(a.level === 'problem'));
+export function WarningList({ remarks }: { remarks: readonly (Warning | Check)[] }) {
+  const shown = remarks.flatMap(({ code, level, message }) =>
+    level === 'fine' ? [] : [{ code, level, message }],
+  );
+  if (shown.length === 0) return null;
+  const sorted = shown.sort((a, b) => Number(b.level === 'problem') - Number(a.level === 'problem'));
   return (
     <ul className="small mt-3 space-y-1.5" aria-label="Remarks on this result">
       {sorted.map((warning) => {

@@ -1,7 +1,10 @@
 // @vitest-environment happy-dom
 import { afterEach, describe, expect, test } from 'vitest';
+import { analyse } from '@/analysis/analyse';
+import { scenarioMaker } from '@/analysis/simulate/scenario';
+import { settingsOf } from '@/db/inputs/block-settings';
 import { msdRows } from '@/components/charts/msd-rows';
-import { formatNumber, quantityText } from '@/components/ui/format-quantity';
+import { formatEstimate, formatNumber, quantityText } from '@/components/ui/format-quantity';
 import { mount, type Mounted } from './mount';
 import { answerOf, attributesOf, id, resultOf, stateOf } from './some-results';
 
@@ -66,6 +69,70 @@ describe('a result', () => {
     page = await mount(stated, answerOf([stateOf(stated, { result: sized })]));
     expect(page.text()).toContain('Apparent diameter');
     expect(page.text()).toContain(`Expected D = ${formatNumber(sized.stokesEinstein!.expectedD!, 3)} µm²/s`);
+  });
+
+  test('a confinement with its size, in the shape that was chosen', async () => {
+    const boxed = { seed: 3, tracks: 20, physics: { box: 0.8, velocity: [0, 0] } };
+    const confined = resultOf(attributes, boxed);
+    expect(confined.verdict).toBe('confined');
+    page = await mount(attributes, answerOf([stateOf(attributes, { result: confined })]));
+    expect(page.text()).toContain(
+      `Width of the box ${formatEstimate(confined.L!.value, confined.L!.lo, confined.L!.hi).value}`,
+    );
+    expect(page.text()).toMatch(/between walls|harmonic well/);
+    await page.unmount();
+    const round = attributesOf({ geometry: 'circle' });
+    page = await mount(round, answerOf([stateOf(round, { result: resultOf(round, boxed) })]));
+    expect(page.text()).toContain('Radius of the circle');
+  });
+
+  test('a flow with its velocity along the axes', async () => {
+    const flowing = resultOf(attributes, { physics: { velocity: [0.8, -0.4] } });
+    page = await mount(attributes, answerOf([stateOf(attributes, { result: flowing })]));
+    expect(flowing.verdict).toBe('directed');
+    expect(page.text()).toMatch(/Common velocity v = 0\.[89]\d? µm\/s along \(0\.\d+, −0\.\d+\) µm\/s/);
+  });
+
+  test('anomalous motion has no D but K and its exponent', async () => {
+    const { trackIds, track, frame, axes } = scenarioMaker({
+      motion: { kind: 'power', alpha: 0.5 },
+      tracks: 20,
+      frames: 100,
+      dims: 2,
+      x: 0.1,
+      exposure: 0,
+    })(2);
+    const outcome = analyse(
+      [
+        {
+          hash: 'a'.repeat(64),
+          trackIds,
+          track,
+          frame,
+          time: null,
+          axes,
+          frameInterval: 0.1,
+          exposure: null,
+        },
+      ],
+      settingsOf(attributes),
+    );
+    if ('failed' in outcome) throw new Error(outcome.message);
+    page = await mount(attributes, answerOf([stateOf(attributes, { result: outcome })]));
+    expect(outcome.verdict).toBe('anomalous');
+    expect(page.text()).toMatch(/K = [\d.]+ µm²\/s\^α/);
+    expect(page.text()).toContain('Exponent α = 0.');
+    expect(page.text()).not.toMatch(/D = [\d.]+ µm²\/s \(/);
+  });
+
+  test('a check that asks for a look stands among the remarks, a fine one does not', async () => {
+    const checks = [
+      { code: 'one-d', level: 'look' as const, p: 1e-5, message: 'The tracks do not agree.' },
+      { code: 'halves', level: 'fine' as const, p: 0.4, message: 'D is the same.' },
+    ];
+    page = await mount(attributes, answerOf([stateOf(attributes, { result: { ...result, checks } })]));
+    expect(page.text()).toContain('The tracks do not agree.');
+    expect(page.text()).not.toContain('D is the same.');
   });
 
   test('without D says so and keeps the verdict', async () => {
