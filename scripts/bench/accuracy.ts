@@ -1,6 +1,6 @@
 /**
  * How often verdicts are right and intervals hold the truth, by simulation with fixed seeds:
- * `npm run bench:accuracy` remakes analysis/accuracy.json (hours); `-- --tracks 1,20 --frames 100 --x 0.25 --repeats 100`
+ * `npm run bench:accuracy` remakes analysis/accuracy.json (hours; `-- --share 0.5` with half the repeats); `-- --tracks 1,20 --frames 100 --x 0.25 --repeats 100`
  * prints a part of it and writes nothing.
  */
 import { writeFileSync } from 'node:fs';
@@ -47,6 +47,7 @@ const { values } = parseArgs({
     x: { type: 'string', default: '0,0.25,1' },
     motion: { type: 'string' },
     repeats: { type: 'string' },
+    share: { type: 'string', default: '1' },
     exposure: { type: 'string', default: '1' },
     missing: { type: 'string', default: '0' },
     spread: { type: 'string', default: '0' },
@@ -115,7 +116,9 @@ for (const tracks of list(values.tracks)) {
         if (!MOTIONS[name])
           throw new Error(`There is no motion "${name}"; there are ${Object.keys(MOTIONS).join(', ')}.`);
         if (MOTIONS[name].several && tracks === 1) continue;
-        const repeats = Number(values.repeats ?? (tracks === 1 ? 400 : tracks < 100 ? 200 : 60));
+        const repeats = Number(
+          values.repeats ?? Math.ceil((tracks === 1 ? 400 : tracks < 100 ? 200 : 60) * Number(values.share)),
+        );
         const cell = measure(
           name,
           {
