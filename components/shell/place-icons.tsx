@@ -49,3 +49,14 @@ export function MeasurementsIcon() {
     </Drawing>
   );
 }
+
+/** A page under a glass. */
+export function SearchIcon() {
+  return (
+    <Drawing>
+      <path d="M4 2.5h8.5v6M4 2.5v15h5" opacity="0.6" />
+      <circle cx="12.5" cy="12.5" r="3.4" />
+      <path d="M15 15l3 3" />
+    </Drawing>
+  );
+}

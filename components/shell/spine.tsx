@@ -3,10 +3,11 @@
 import Link from 'next/link';
 import { usePathname } from 'next/navigation';
 import type { ReactNode } from 'react';
+import { GoTo } from '@/components/search/go-to';
 import { classes } from '@/components/ui/classes';
 import { Tooltip } from '@/components/ui/tooltip';
 import { ProductMark } from '@/components/ui/walk-mark';
-import { MeasurementsIcon, NotebooksIcon, TodayIcon } from './place-icons';
+import { MeasurementsIcon, NotebooksIcon, SearchIcon, TodayIcon } from './place-icons';
 
 interface Place {
   readonly href: string;
@@ -30,6 +31,7 @@ const places: readonly Place[] = [
     icon: <MeasurementsIcon />,
     holds: (path) => path.startsWith('/measurements'),
   },
+  { href: '/search', word: 'Search', icon: <SearchIcon />, holds: (path) => path.startsWith('/search') },
 ];
 
 /**
@@ -63,6 +65,18 @@ export function Spine({ person }: { person: ReactNode }) {
           ))}
         </ul>
       </nav>
+      <GoTo
+        trigger={(open) => (
+          <button
+            type="button"
+            onClick={open}
+            aria-keyshortcuts="Control+Comma"
+            className="label hidden text-muted hover:text-ink tab:block tab:min-h-11 tab:px-1 tab:text-center desk:mt-3 desk:min-h-9 desk:px-5 desk:text-left"
+          >
+            Go to …
+          </button>
+        )}
+      />
       <div className="flex grow-0 items-center justify-center tab:mt-auto tab:py-3 desk:justify-start desk:px-2">
         {person}
       </div>

@@ -40,6 +40,7 @@ export interface ActionThings {
   'attachment.add': InEntry;
   'reading.create': InEntry;
   'measurements.read': null;
+  'search.read': null;
 }
 
 export type Action = keyof ActionThings;
@@ -59,6 +60,7 @@ const rules: { [A in Action]: (actor: Actor, thing: ActionThings[A]) => boolean 
   'attachment.add': (actor, thing) => isWriter(actor, thing) && isOpenDraft(thing) && !thing.archived,
   'reading.create': (actor, thing) => isWriter(actor, thing) && isOpenDraft(thing) && !thing.archived,
   'measurements.read': () => true,
+  'search.read': () => true,
 };
 
 /** Whether `actor` may do `action` to `thing`. Nobody who is deactivated, or unknown, may do anything. */

@@ -11,3 +11,6 @@ export const momentByDatabase = (name: string) =>
     .default(sql`motebook_now()`);
 
 export const moment = (name: string) => timestamp(name, { withTimezone: true, mode: 'date' });
+
+/** A text cut into words for the full-text search. */
+export const tsvector = customType<{ data: string }>({ dataType: () => 'tsvector' });

@@ -1,3 +1,4 @@
+import { sql } from 'drizzle-orm';
 import {
   bigint,
   doublePrecision,
@@ -11,7 +12,7 @@ import {
   uuid,
 } from 'drizzle-orm/pg-core';
 import type { AnalysisFailure, AnalysisResult, AnalysisSettings } from '../../analysis/types';
-import { momentByDatabase } from './columns';
+import { momentByDatabase, tsvector } from './columns';
 import { entry } from './entry';
 import { notebook } from './notebook';
 
@@ -35,6 +36,8 @@ export const entryText = pgTable('entry_text', {
   epoch: integer('epoch').notNull(),
   seq: bigint('seq', { mode: 'number' }).notNull(),
   plain: text('plain').notNull(),
+  /** For the full-text search; the database makes it of `plain`. */
+  words: tsvector('words').generatedAlwaysAs(sql`to_tsvector('english', left("plain", 400000))`),
   at: momentByDatabase('at'),
 });
 
