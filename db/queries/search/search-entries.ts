@@ -115,10 +115,10 @@ async function titlesAlike(db: Connection, actor: Actor, typed: string) {
     .where(
       and(
         mayReadNotebook(actor, entry.notebookId),
-        sql`word_similarity(lower(${typed}), lower(${entry.title})) > 0.35`,
+        sql`trigram.word_similarity(lower(${typed}), lower(${entry.title})) > 0.35`,
       ),
     )
-    .orderBy(desc(sql`word_similarity(lower(${typed}), lower(${entry.title}))`), entry.id)
+    .orderBy(desc(sql`trigram.word_similarity(lower(${typed}), lower(${entry.title}))`), entry.id)
     .limit(3);
 }
 
