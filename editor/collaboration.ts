@@ -66,6 +66,7 @@ export class Collaboration {
   private readonly listeners = new Set<() => void>();
   private state: CollaborationState = START;
   private attempts = 0;
+  private later: ReturnType<typeof setTimeout> | undefined;
 
   constructor(options: CollaborationOptions) {
     this.core = new HelloSocketCore({
@@ -85,7 +86,7 @@ export class Collaboration {
     this.core.onState = (state) => this.set({ readOnly: state.readOnly });
     this.core.onProjected = (seq) => options.onProjected?.(seq);
     this.core.onEntryChanged = () => options.onEntryChanged?.();
-    this.core.onRefused = (_frame, code) => this.wasRefused(code);
+    this.core.onRefused = (frame, code) => this.wasRefused(frame, code);
     this.provider.on('sync', (synced: boolean) => {
       if (!synced) return;
       this.attempts = 0;
@@ -119,6 +120,7 @@ export class Collaboration {
 
   destroy(): void {
     this.listeners.clear();
+    clearTimeout(this.later);
     this.provider.destroy();
     this.doc.destroy();
   }
@@ -128,22 +130,28 @@ export class Collaboration {
     return Math.max(SHORTEST_PAUSE_MS, Math.random() * top);
   }
 
-  private wasRefused(code: Refusal): void {
-    if (code === 'foreign-id') {
-      // Somebody else has this id, by a chance of one in four thousand million: take another and knock again.
-      this.doc.clientID = Math.floor(Math.random() * 2 ** 32);
-      this.provider.disconnect();
-      this.provider.connect();
-      return;
-    }
+  private wasRefused(frame: number, code: Refusal): void {
+    if (code === 'foreign-id' && frame === 0) return this.takeOtherId();
     // A gap and a full pipe mend themselves by sending again.
     if (code === 'gap') return;
     if (code === 'slow-down' || code === 'storage') {
       this.provider.disconnect();
-      setTimeout(() => this.provider.connect(), this.nextPause());
+      clearTimeout(this.later);
+      this.later = setTimeout(() => this.provider.connect(), this.nextPause());
       return;
     }
     this.set({ phase: 'refused', refusal: code, readOnly: true });
+  }
+
+  /** Somebody else has this page's id, by a chance of one in four thousand million: take another and knock again. */
+  private takeOtherId(): void {
+    const { awareness } = this.provider;
+    this.provider.disconnect();
+    const caret = awareness.getLocalState();
+    awareness.setLocalState(null);
+    this.doc.clientID = awareness.clientID = Math.floor(Math.random() * 2 ** 32);
+    awareness.setLocalState(caret);
+    this.provider.connect();
   }
 
   private refresh(): void {

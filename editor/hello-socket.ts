@@ -20,6 +20,8 @@ interface Hello {
 }
 
 const SYNC_STEP_1 = 0;
+/** `readyState` of a socket that takes frames (WebSockets standard). */
+const OPEN = 1;
 
 /**
  * What the product adds below y-websocket's provider (integrity rule C13): hello is the first frame, and others wait until
@@ -41,6 +43,8 @@ export class HelloSocketCore {
   private unsent = false;
   private answered = false;
   private frame = 0;
+  /** The line that counts. One that was given up may report its close long after the next has been opened. */
+  private socket: WebSocket | null = null;
 
   constructor(private readonly hello: Hello) {}
 
@@ -82,13 +86,16 @@ export class HelloSocketCore {
     handle(FRAME.projected, (_encoder, decoder) => this.onProjected(decoding.readVarUint(decoder)));
     handle(FRAME.entry, () => this.onEntryChanged());
     provider.doc.on('update', (_update: Uint8Array, origin: unknown) => {
-      if (origin === provider || this.answered) return;
+      // A line that is closing takes no frame any more.
+      if (origin === provider || (this.answered && this.socket?.readyState === OPEN)) return;
       this.unsent = true;
       this.onChange();
     });
+    provider.on('connection-close', () => this.lost());
   }
 
   private begin(socket: WebSocket): WebSocket {
+    this.socket = socket;
     this.answered = false;
     this.frame = 0;
     const held: Uint8Array[] = [];
@@ -97,6 +104,7 @@ export class HelloSocketCore {
     socket.addEventListener('message', (event: MessageEvent) => {
       if (
         this.answered ||
+        this.socket !== socket ||
         !(event.data instanceof ArrayBuffer) ||
         new Uint8Array(event.data)[0] !== FRAME.state
       )
@@ -107,7 +115,6 @@ export class HelloSocketCore {
         send(data);
       }
     });
-    socket.addEventListener('close', () => this.lost());
     socket.send = (data) => {
       const bytes = data as Uint8Array;
       if (!this.answered) {
@@ -153,6 +160,7 @@ export class HelloSocketCore {
     this.waiting.clear();
     this.refused = 0;
     this.answered = false;
+    this.socket = null;
     this.onChange();
   }
 

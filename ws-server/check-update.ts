@@ -6,15 +6,16 @@ import { LIMITS } from './limits';
 /**
  * Checks an update before it is stored or applied (integrity rule C4). Yjs itself accepts anything: frames that burn
  * somebody else's clock, that write under another root, or whose content the editor does not know. Attribution never
- * rests on Yjs ids, but a client may only extend the id that its account registered, without a gap.
+ * rests on Yjs ids, but a client may only extend the id that its account registered, without a gap. And it may only name
+ * what the log holds: a row that builds on something missing would stay pending, and the entry could not be opened again.
  */
 export interface UpdateContext {
   /** The committed document. */
   readonly doc: Y.Doc;
-  /** Clock up to which a client's content is committed or on its way into the store. */
-  known(client: number): number;
   /** The id that this socket registered. */
   readonly ownClient: number;
+  /** Clock up to which this client's content is committed or on its way into the store. */
+  readonly ownKnown: number;
 }
 
 export type UpdateCheck =
@@ -37,8 +38,10 @@ export function checkUpdate(payload: Uint8Array, context: UpdateContext): Update
   } catch {
     return refuse('schema');
   }
-  const { known, ownClient } = context;
-  let ownClock = known(ownClient);
+  const { ownClient } = context;
+  let ownClock = context.ownKnown;
+  // Of others, only what is committed: what is on its way may still be refused.
+  const known = (client: number) => (client === ownClient ? ownClock : Y.getState(context.doc.store, client));
   let length = 0;
   for (const struct of decoded.structs) {
     const { client, clock } = struct.id;
@@ -48,15 +51,23 @@ export function checkUpdate(payload: Uint8Array, context: UpdateContext): Update
     if (clock > ownClock) return refuse('gap');
     length += struct.length;
     if (length > LIMITS.frameLength) return refuse('too-big');
-    if (struct instanceof Y.Item && !isAllowed(struct)) return refuse('schema');
+    if (struct instanceof Y.Item) {
+      if (!isAllowed(struct)) return refuse('schema');
+      if (references(struct).some((id) => id.clock >= (id.client === ownClient ? clock : known(id.client))))
+        return refuse('gap');
+    }
     ownClock = Math.max(ownClock, clock + struct.length);
   }
   for (const [client, ranges] of decoded.ds.clients) {
-    const end = client === ownClient ? ownClock : known(client);
-    if (ranges.some((range) => range.clock + range.len > end)) return refuse('gap');
+    if (ranges.some((range) => range.clock + range.len > known(client))) return refuse('gap');
   }
   if (length === 0 && deletionsAreKnown(decoded.ds, context.doc)) return { ok: true, nothingNew: true };
   return { ok: true, nothingNew: false, ownClock };
+}
+
+/** The items that an item is placed by: its neighbours and what it stands in. */
+function references(item: Y.Item): Y.ID[] {
+  return [item.origin, item.rightOrigin, item.parent as unknown].filter((one) => one instanceof Y.ID);
 }
 
 /** Whether an item is content that the editor's schema knows, in the one place where it may stand. */

@@ -152,7 +152,7 @@ export class Connection implements Member {
     const check = checkUpdate(payload, {
       doc: room.doc,
       ownClient: this.client,
-      known: (client) => room.known(client),
+      ownKnown: room.known(this.client),
     });
     if (!check.ok) return this.refuse(frame, check.code);
     if (check.nothingNew) return this.send(ackFrame(frame, room.seq));

@@ -15,7 +15,7 @@ export interface PendingUpdate {
   readonly done: (outcome: { seq: number } | { refused: Refusal | 'epoch' }) => void;
 }
 
-/** Updates of one account in one entry, in order: one call of append_updates. */
+/** Updates of one account in one entry, in order: one call of append_updates, stored whole or not at all. */
 export interface UpdateGroup {
   readonly batch: string;
   readonly updates: readonly PendingUpdate[];
@@ -64,8 +64,9 @@ export class Flusher {
         for (const [at, group] of groups.entries()) {
           const outcome = outcomes[at]!;
           for (const [i, update] of group.updates.entries()) {
-            update.done('seqs' in outcome ? { seq: outcome.seqs[i]! } : outcome);
+            tell(update, 'seqs' in outcome ? { seq: outcome.seqs[i]! } : outcome);
           }
+          if ('refused' in outcome) this.refuseBehind(group, outcome);
         }
       }
     } finally {
@@ -74,14 +75,27 @@ export class Flusher {
     }
   }
 
+  /** What waits may build on what was refused, and a row that builds on a missing one could never be replayed. */
+  private refuseBehind(group: UpdateGroup, outcome: { refused: Refusal | 'epoch' }): void {
+    const { entryId } = group.updates[0]!;
+    const clients = new Set(group.updates.map((update) => update.client));
+    const behind = this.waiting.filter((one) => one.entryId === entryId && clients.has(one.client));
+    if (behind.length === 0) return;
+    this.waiting = this.waiting.filter((one) => !behind.includes(one));
+    for (const update of behind) tell(update, outcome);
+  }
+
   private takeBatch(): PendingUpdate[] {
     let bytes = 0;
     let count = 0;
-    while (
-      count < this.waiting.length &&
-      (count === 0 || bytes + this.waiting[count]!.payload.length <= LIMITS.batchBytes)
-    ) {
-      bytes += this.waiting[count]!.payload.length;
+    const locks = new Map<string, string>();
+    for (const update of this.waiting) {
+      bytes += update.payload.length;
+      if (count > 0 && bytes > LIMITS.batchBytes) break;
+      // Under two locks of one entry, the later could be stored although the earlier was refused.
+      const lock = `${update.epoch}/${update.lock}`;
+      if ((locks.get(update.entryId) ?? lock) !== lock) break;
+      locks.set(update.entryId, lock);
       count += 1;
     }
     return this.waiting.splice(0, count);
@@ -105,25 +119,31 @@ export class Flusher {
   }
 }
 
-/** By entry in ascending id (so that two servers lock in the same order), within an entry by runs of one account. */
-export function groupUpdates(batch: readonly PendingUpdate[]): UpdateGroup[] {
-  const sorted = batch
-    .map((update, at) => ({ update, at }))
-    .sort((a, b) =>
-      a.update.entryId < b.update.entryId ? -1 : a.update.entryId > b.update.entryId ? 1 : a.at - b.at,
-    )
-    .map(({ update }) => update);
-  const groups: { batch: string; updates: PendingUpdate[] }[] = [];
-  for (const update of sorted) {
-    const last = groups.at(-1)?.updates[0];
-    const same =
-      last &&
-      last.entryId === update.entryId &&
-      last.loginId === update.loginId &&
-      last.epoch === update.epoch &&
-      last.lock === update.lock;
-    if (same) groups.at(-1)!.updates.push(update);
-    else groups.push({ batch: randomUUID(), updates: [update] });
+/** A broken listener must not keep others from hearing of theirs. */
+function tell(update: PendingUpdate, outcome: Parameters<PendingUpdate['done']>[0]): void {
+  try {
+    update.done(outcome);
+  } catch (error) {
+    console.error(`entry ${update.entryId}: an outcome could not be told: ${(error as Error).message}`);
   }
-  return groups;
+}
+
+/**
+ * By entry in ascending id, so that two servers lock in the same order; within an entry by account, each in the order of
+ * arrival. Accounts cannot build on each other's text before it is committed, so their order among each other is free,
+ * while an account's updates stand or fall together.
+ */
+export function groupUpdates(batch: readonly PendingUpdate[]): UpdateGroup[] {
+  const groups = new Map<string, { batch: string; updates: PendingUpdate[] }>();
+  for (const update of batch) {
+    const { entryId, loginId, epoch, lock } = update;
+    const key = [entryId, loginId, epoch, lock].join('/');
+    const group = groups.get(key);
+    if (group) group.updates.push(update);
+    else groups.set(key, { batch: randomUUID(), updates: [update] });
+  }
+  const entryOf = (group: UpdateGroup) => group.updates[0]!.entryId;
+  return [...groups.values()].sort((a, b) =>
+    entryOf(a) < entryOf(b) ? -1 : entryOf(a) > entryOf(b) ? 1 : 0,
+  );
 }

@@ -1,11 +1,15 @@
 import pg from 'pg';
 
+/** Between two attempts to come back. */
+const PAUSE_MS = 300;
+
 /**
  * A connection of its own that hears the database's announcements; never one of a pool, which would hand it to others.
  * When it breaks it comes back, and `onBack` lets the listener catch up on what it has missed.
  */
 export class Listener {
   private client: pg.Client | null = null;
+  private timer: NodeJS.Timeout | null = null;
   private ended = false;
 
   constructor(
@@ -22,24 +26,34 @@ export class Listener {
       keepAlive: true,
     });
     client.on('error', () => undefined);
-    client.on('end', () => this.again());
     client.on('notification', (message) => this.channels[message.channel]?.(message.payload ?? ''));
-    await client.connect();
+    try {
+      await client.connect();
+      for (const channel of Object.keys(this.channels)) await client.query(`LISTEN ${channel}`);
+    } catch (error) {
+      void client.end().catch(() => undefined);
+      throw error;
+    }
+    if (this.ended) return client.end();
     this.client = client;
-    for (const channel of Object.keys(this.channels)) await client.query(`LISTEN ${channel}`);
+    // Only now: an attempt that fails ends too, and must not be answered twice.
+    client.on('end', () => this.again());
   }
 
   async stop(): Promise<void> {
     this.ended = true;
+    if (this.timer) clearTimeout(this.timer);
     await this.client?.end();
   }
 
   private again(): void {
     if (this.ended) return;
     this.client = null;
-    setTimeout(() => {
-      if (this.ended) return;
-      this.start().then(this.onBack, () => this.again());
-    }, 300);
+    this.timer = setTimeout(() => {
+      this.start().then(
+        () => this.ended || this.onBack(),
+        () => this.again(),
+      );
+    }, PAUSE_MS);
   }
 }
