@@ -1,6 +1,7 @@
 import type { Trajectories } from '../types';
 import { exposureOf, toMicrometres, toSeconds } from './convert';
 import { MAX_PROBLEM_TEXT, MAX_PROBLEMS_KEPT } from './limits';
+import { GrowingFloats } from './growing';
 import { readNumber, whyNoNumber } from './number';
 import type { ReadingSpec, RowProblem } from './types';
 
@@ -18,14 +19,16 @@ export class RowCollector {
   readonly problems: RowProblem[] = [];
   problemCount = 0;
   private readonly ids = new Map<string, number>();
-  private readonly track: number[] = [];
-  private readonly clock: number[] = [];
+  private readonly track = new GrowingFloats();
+  private readonly clock = new GrowingFloats();
   private readonly axes: {
     name: string;
     column: number;
-    values: number[];
+    values: GrowingFloats;
     convert: (value: number) => number;
   }[];
+  private lastId: string | null = null;
+  private lastTrack = -1;
   private readonly convertClock: (value: number) => number;
 
   constructor(private readonly spec: ReadingSpec) {
@@ -34,7 +37,12 @@ export class RowCollector {
       const column = columns[name];
       if (column === null) return [];
       return [
-        { name, column, values: [], convert: toMicrometres(units[name] ?? 'um', Number(spec.pixelSize)) },
+        {
+          name,
+          column,
+          values: new GrowingFloats(),
+          convert: toMicrometres(units[name] ?? 'um', Number(spec.pixelSize)),
+        },
       ];
     });
     this.convertClock = columns.time === null ? (frame) => frame : toSeconds(units.time ?? 's');
@@ -76,21 +84,51 @@ export class RowCollector {
       reasons += `${reasons === '' ? '' : '; '}${whyNoNumber(axis.name, cell, dialect.decimal)}`;
     }
     if (reasons !== '') this.addProblem(line, reasons, text());
-    let track = this.ids.get(id);
-    if (track === undefined) this.ids.set(id, (track = this.ids.size));
-    this.track.push(track);
+    this.track.push(this.trackOf(id));
     this.clock.push(clock);
   }
 
+  /** Columns of numbers of a plain row, in the order of `addNumbers`: time or frame first, then the axes. */
+  get numberColumns(): number[] {
+    return [(this.spec.columns.time ?? this.spec.columns.frame)!, ...this.axes.map(({ column }) => column)];
+  }
+
+  /**
+   * A row that is all numbers. @returns false, and nothing is kept, when there is something to say about it.
+   */
+  addNumbers(id: string, values: Float64Array): boolean {
+    const clock = this.convertClock(values[0]!);
+    if (!Number.isFinite(clock)) return false;
+    if (this.spec.columns.time === null && !(Number.isInteger(clock) && Math.abs(clock) <= LARGEST_FRAME))
+      return false;
+    for (let axis = 0; axis < this.axes.length; axis++)
+      if (!Number.isFinite(this.axes[axis]!.convert(values[axis + 1]!))) return false;
+    for (let axis = 0; axis < this.axes.length; axis++)
+      this.axes[axis]!.values.push(this.axes[axis]!.convert(values[axis + 1]!));
+    this.track.push(this.trackOf(id));
+    this.clock.push(clock);
+    return true;
+  }
+
+  private trackOf(id: string): number {
+    if (id === this.lastId) return this.lastTrack;
+    let track = this.ids.get(id);
+    if (track === undefined) this.ids.set(id, (track = this.ids.size));
+    this.lastId = id;
+    this.lastTrack = track;
+    return track;
+  }
+
+  /** The columns as a whole; the collector is empty afterwards. */
   trajectories(): Omit<Trajectories, 'hash'> {
     const timed = this.spec.columns.time !== null;
     const { frameInterval } = this.spec;
     return {
       trackIds: [...this.ids.keys()],
-      track: Int32Array.from(this.track),
-      frame: timed ? null : Int32Array.from(this.clock),
-      time: timed ? Float64Array.from(this.clock) : null,
-      axes: this.axes.map((axis) => Float64Array.from(axis.values)),
+      track: Int32Array.from(this.track.take()),
+      frame: timed ? null : Int32Array.from(this.clock.take()),
+      time: timed ? this.clock.take() : null,
+      axes: this.axes.map((axis) => axis.values.take()),
       // Measured times say more than a rounded statement that agrees with them.
       frameInterval: timed || frameInterval === null ? null : Number(frameInterval),
       pixelSize: this.spec.pixelSize === null ? null : Number(this.spec.pixelSize),

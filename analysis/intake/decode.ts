@@ -61,7 +61,10 @@ function undecodable(
 }
 
 /** Too many bytes, none, or bytes that are no text. */
-function unfitBytes(bytes: Uint8Array, encoding: Dialect['encoding'] | undefined): IntakeFailure | null {
+export function unfitBytes(
+  bytes: Uint8Array,
+  encoding: Dialect['encoding'] | undefined,
+): IntakeFailure | null {
   if (bytes.length === 0) return intakeFailure('empty', 'The file is empty. Export the tracks again.');
   if (bytes.length > MAX_BYTES) return tooBig(bytes.length);
   const kind = recogniseKind(bytes);

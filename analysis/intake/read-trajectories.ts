@@ -1,11 +1,12 @@
 import type { Trajectories } from '../types';
+import { eachByteRow, mayReadBytes, startOfLine } from './byte-rows';
 import { checkColumns, checkSpec } from './check-spec';
 import { RowCollector } from './collect-rows';
 import { contradictionOf } from './contradiction';
-import { decodeFile } from './decode';
+import { decodeFile, unfitBytes } from './decode';
 import { intakeFailure } from './failure';
 import { previewPaths } from './preview-paths';
-import { eachRow, withPlainBreaks } from './rows';
+import { eachRow, withPlainBreaks, type RowVisitor } from './rows';
 import { summarise } from './summarise';
 import type { Dialect, IntakeFailure, PathPreview, ReadingSpec, ReadingSummary, RowProblem } from './types';
 
@@ -27,12 +28,11 @@ export interface ReadOutcome {
 export function readTrajectories(bytes: Uint8Array, spec: ReadingSpec): ReadOutcome | IntakeFailure {
   const fault = checkSpec(spec);
   if (fault) return fault;
-  const decoded = decodeFile(bytes, spec.dialect.encoding);
-  if ('failed' in decoded) return decoded;
-  const text = withPlainBreaks(decoded.text);
-  if (typeof text !== 'string') return text;
   const collector = new RowCollector(spec);
-  const failed = readRows(text, spec, collector);
+  const data = bytes.subarray(startOfLine(bytes, spec.dialect.firstDataLine));
+  const failed = mayReadBytes(data, spec.dialect)
+    ? readBytes(bytes, data, spec, collector)
+    : readText(bytes, spec, collector);
   if (failed) return failed;
   if (collector.count === 0) {
     const first = collector.problems[0];
@@ -55,12 +55,52 @@ export function readTrajectories(bytes: Uint8Array, spec: ReadingSpec): ReadOutc
   };
 }
 
-function readRows(text: string, spec: ReadingSpec, collector: RowCollector): IntakeFailure | null {
+/** How rows come: from a text, or straight from bytes. */
+type RowSource = (visitor: RowVisitor, width: () => number | null) => IntakeFailure | null;
+
+/** Quoted cells, and encodings of several bytes a letter: as a text. */
+function readText(bytes: Uint8Array, spec: ReadingSpec, collector: RowCollector): IntakeFailure | null {
+  const decoded = decodeFile(bytes, spec.dialect.encoding);
+  if ('failed' in decoded) return decoded;
+  const text = withPlainBreaks(decoded.text);
+  if (typeof text !== 'string') return text;
+  return readRows(spec, collector, (visitor) => eachRow(text, spec.dialect, visitor));
+}
+
+/** Everything else: the lines above the data as a text, the data from their bytes. */
+function readBytes(
+  bytes: Uint8Array,
+  data: Uint8Array,
+  spec: ReadingSpec,
+  collector: RowCollector,
+): IntakeFailure | null {
+  const unfit = unfitBytes(bytes, spec.dialect.encoding);
+  if (unfit) return unfit;
+  const head = bytes.subarray(0, bytes.length - data.length);
+  const decoded = head.length === 0 ? { text: '' } : decodeFile(head, spec.dialect.encoding);
+  if ('failed' in decoded) return decoded;
+  const text = withPlainBreaks(decoded.text);
+  if (typeof text !== 'string') return text;
+  const rows = {
+    track: spec.columns.track,
+    numbers: collector.numberColumns,
+    take: (id: string, values: Float64Array) => collector.addNumbers(id, values),
+  };
+  return readRows(
+    spec,
+    collector,
+    (visitor, width) =>
+      eachRow(text, spec.dialect, visitor) ?? eachByteRow(data, spec.dialect, { ...rows, width }, visitor),
+  );
+}
+
+function readRows(spec: ReadingSpec, collector: RowCollector, source: RowSource): IntakeFailure | null {
   const { dialect } = spec;
   const header = new RepeatedHeader(dialect);
   let width = 0;
+  let settled = false;
   let missing: IntakeFailure | null = null;
-  const failed = eachRow(text, dialect, {
+  const visitor: RowVisitor = {
     fault: (line, reason, shown) => {
       if (line >= dialect.firstDataLine) collector.addProblem(line, reason, shown);
     },
@@ -71,18 +111,20 @@ function readRows(text: string, spec: ReadingSpec, collector: RowCollector): Int
         if (line === dialect.headerLine && dialect.delimiter !== ' ') width = cells.length;
         return;
       }
-      if (missing === null && collector.count === 0 && collector.problemCount === 0) {
+      if (!settled && collector.count === 0 && collector.problemCount === 0) {
         width = Math.max(width, cells.length);
         missing = checkColumns(spec, width);
         if (missing) return false;
       }
+      settled = true;
       if (header.isAgain(cells)) collector.addProblem(line, 'the header again', shown());
       else if (misfit(cells, width, dialect.delimiter))
         collector.addProblem(line, `${cells.length} cells instead of ${width}`, shown());
       else collector.add(line, cells, shown);
       return;
     },
-  });
+  };
+  const failed = source(visitor, () => (settled ? width : null));
   return missing ?? failed;
 }
 

@@ -88,6 +88,23 @@ export function eachRow(
   return failure;
 }
 
+/**
+ * One line without quotation marks as a row, as `eachRow` would give it.
+ * @returns null for a blank line and for a comment.
+ */
+export function asRow(
+  text: string,
+  dialect: Pick<Dialect, 'delimiter' | 'comment'>,
+  line: number,
+): Row | IntakeFailure | null {
+  const blanks = dialect.delimiter === ' ';
+  const tabless = blanks ? text.replaceAll('\t', ' ') : text;
+  if (dialect.comment !== null && tabless.replace(/^[ \t]+/, '').startsWith(dialect.comment)) return null;
+  const cells = trimmed(tabless.split(dialect.delimiter), blanks);
+  if (cells.length === 0) return null;
+  return tooLarge(cells, line) ?? { line, cells };
+}
+
 /** Number of line breaks between two places of a text. */
 function countBreaks(text: string, from: number, to: number): number {
   let count = 0;
