@@ -93,7 +93,10 @@ export class Collaboration {
       this.set({ loaded: true });
       this.refresh();
     });
-    this.provider.on('status', () => this.refresh());
+    this.provider.on('status', ({ status }) => {
+      this.presentAnew(status);
+      this.refresh();
+    });
     this.provider.on('connection-close', () => {
       // Full jitter: after a fault of the server, its clients must not all come back at the same moment.
       this.attempts += 1;
@@ -152,6 +155,19 @@ export class Collaboration {
     this.doc.clientID = awareness.clientID = Math.floor(Math.random() * 2 ** 32);
     awareness.setLocalState(caret);
     this.provider.connect();
+  }
+
+  /**
+   * Carets across a broken line. The stock library takes a state only when it is newer than what it knows of, also of
+   * somebody who has left: so this page's own is made newer, and what was known of others is forgotten.
+   */
+  private presentAnew(status: string): void {
+    const { awareness } = this.provider;
+    if (status === 'connected') awareness.setLocalState(awareness.getLocalState());
+    if (status !== 'disconnected') return;
+    for (const client of awareness.meta.keys()) {
+      if (client !== awareness.clientID) awareness.meta.delete(client);
+    }
   }
 
   private refresh(): void {

@@ -155,6 +155,7 @@ export class Room {
     this.members.delete(member);
     this.queued.delete(member.client);
     const last = this.presence.get(member.client);
-    if (last) this.present({ ...last, clock: last.clock + 1, state: null }, member);
+    // Under the same clock, as the stock server does: one step on is the client's own, when it comes back.
+    if (last) this.present({ ...last, state: null }, member);
   }
 }
