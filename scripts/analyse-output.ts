@@ -17,7 +17,8 @@ export interface Remark {
 
 /** The line of a file for programs. Keys and units are those of `--help`; nothing here is rounded. */
 export function toJson({ file, result, remarks }: FileOutcome): string {
-  const { D, drift } = result;
+  const { D } = result;
+  const looks = result.checks.filter(({ level }) => level !== 'fine');
   return JSON.stringify({
     file,
     D: D?.value ?? null,
@@ -25,13 +26,19 @@ export function toJson({ file, result, remarks }: FileOutcome): string {
     D_hi: D?.hi ?? null,
     sigma: result.sigma,
     verdict: result.verdict,
-    v: drift?.significant ? drift.speed : null,
+    v: speedOf(result),
     L: result.L?.value ?? null,
     alpha: result.alpha?.value ?? null,
     tracks: result.tracks,
     frames: result.frames,
-    warnings: [...remarks, ...result.warnings].flatMap(({ code }) => code ?? []),
+    warnings: [...remarks, ...result.warnings, ...looks].flatMap(({ code }) => code ?? []),
   });
+}
+
+/** Of all tracks together, or of each in a direction of its own. */
+function speedOf({ drift, individualSpeed }: AnalysisResult): number | null {
+  if (individualSpeed) return individualSpeed.value;
+  return drift?.significant ? drift.speed : null;
 }
 
 const HEADINGS = ['file', 'D (µm²/s)', '95 % interval', 'verdict', 'v (µm/s)', 'tracks', 'frames'];
@@ -50,13 +57,14 @@ export function forPeople(outcomes: readonly FileOutcome[]): string {
 }
 
 function cells({ file, result }: FileOutcome): string[] {
-  const { D, drift } = result;
+  const { D } = result;
+  const speed = speedOf(result);
   return [
     file,
     digits(D?.value),
     D ? `${digits(D.lo)} to ${digits(D.hi)}` : '–',
     result.verdict,
-    drift?.significant ? digits(drift.speed) : '–',
+    speed === null ? '–' : digits(speed),
     String(result.tracks),
     String(result.frames),
   ];
