@@ -77,7 +77,8 @@ function explain({ file, result, description, remarks }: FileOutcome): string[] 
     size?.apparentViscosity && `Apparent viscosity ${digits(size.apparentViscosity.value)} mPa·s.`,
     size?.expectedD != null && `Expected D ${digits(size.expectedD)} µm²/s.`,
   ].filter((line) => typeof line === 'string');
-  const messages = [...remarks, ...result.warnings].flatMap(({ message }) => message ?? []);
+  const looks = result.checks.filter(({ level }) => level !== 'fine');
+  const messages = [...remarks, ...result.warnings, ...looks].flatMap(({ message }) => message ?? []);
   return [
     '',
     `${file}: ${description}`,

@@ -161,10 +161,12 @@ describe('what motion is called', () => {
 });
 
 describe('units', () => {
-  const rows = Array.from(
-    { length: 40 },
-    (_, i) => `1,${i},${Math.sin(i * i) * 3},${Math.cos(5 * i * i) * 3}`,
-  ).join('\n');
+  let [x, y] = [0, 0];
+  const rows = Array.from({ length: 40 }, (_, i) => {
+    x += Math.sin(i * i);
+    y += Math.cos(5 * i * i);
+    return `1,${i},${x},${y}`;
+  }).join('\n');
 
   test('without units a file is in µm and s; one in the header wins over --pixel-size', async () => {
     const bare = await file('bare.csv', `track,t,x,y\n${rows}\n`);
