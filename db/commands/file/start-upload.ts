@@ -1,4 +1,5 @@
 import type { Database } from '../../client';
+import { safeName } from '../../files/safe-name';
 import type { Actor } from '../../policies/may';
 import { getEntryFor } from '../../queries/entry/get-entry-for';
 import { uploadTicket } from '../../schema/index';
@@ -17,7 +18,7 @@ export async function startUpload(
         entryId: input.entryId,
         personId: actor.personId,
         loginId: actor.loginId,
-        name: input.name.slice(0, 500),
+        name: safeName(input.name),
         bytes: input.bytes,
       })
       .returning({ id: uploadTicket.id });
