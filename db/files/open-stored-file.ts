@@ -64,7 +64,7 @@ export const sha256 = (bytes: Uint8Array): string => createHash('sha256').update
 async function keep(file: string, bytes: Buffer): Promise<void> {
   await mkdir(path.dirname(file), { recursive: true });
   const temporary = `${file}.${randomUUID()}`;
-  const handle = await open(temporary, 'wx');
+  const handle = await open(/* turbopackIgnore: true */ temporary, 'wx');
   try {
     await handle.writeFile(bytes);
     await handle.sync();
