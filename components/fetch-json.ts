@@ -12,7 +12,12 @@ export async function fetchJson<Shape extends z.ZodType>(
   shape: Shape,
   options: { body?: unknown; signal?: AbortSignal } = {},
 ): Promise<z.output<Shape>> {
-  const answer: unknown = await (await send(path, options)).json().catch(() => null);
+  const response = await send(path, options);
+  const answer: unknown = await response.json().catch((error: unknown) => {
+    // What is no JSON is not understood; any other fault is one of the line, in the middle of the answer.
+    if (error instanceof SyntaxError) return null;
+    throw lineFault(error);
+  });
   const parsed = shape.safeParse(answer);
   if (parsed.success) return parsed.data;
   console.error(`answer of ${path} not understood`, parsed.error);
@@ -35,8 +40,7 @@ async function send(path: string, options: { body?: unknown; signal?: AbortSigna
   try {
     response = await fetch(path, init);
   } catch (error) {
-    if ((error as Error).name === 'AbortError') throw error;
-    throw new RefusedError(503, 'The server cannot be reached. Check the connection, then try again.', {});
+    throw lineFault(error);
   }
   if (response.ok) return response;
   const refusal = (await response.json().catch(() => null)) as Refusal | null;
@@ -45,4 +49,10 @@ async function send(path: string, options: { body?: unknown; signal?: AbortSigna
     refusal?.sentence ?? ERRORS.unexpected.sentence,
     refusal?.fields ?? {},
   );
+}
+
+/** A request that this page gave up itself stays what it is; otherwise the line is at fault. */
+function lineFault(error: unknown): unknown {
+  if ((error as Error).name === 'AbortError') return error;
+  return new RefusedError(503, 'The server cannot be reached. Check the connection, then try again.', {});
 }

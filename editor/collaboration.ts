@@ -25,6 +25,8 @@ export interface PersonHere {
 
 export interface CollaborationState {
   readonly phase: SavePhase;
+  /** Text on this page that the server has not acknowledged. */
+  readonly unsaved: boolean;
   /** The document of the server has arrived at least once. */
   readonly loaded: boolean;
   readonly readOnly: boolean;
@@ -46,6 +48,7 @@ export interface CollaborationOptions {
 
 const START: CollaborationState = {
   phase: 'connecting',
+  unsaved: false,
   loaded: false,
   readOnly: true,
   refusal: null,
@@ -171,16 +174,17 @@ export class Collaboration {
   }
 
   private refresh(): void {
-    if (this.state.phase === 'ended' || this.state.phase === 'refused') return;
+    const unsaved = this.hasUnsaved;
+    if (this.state.phase === 'ended' || this.state.phase === 'refused') return this.set({ unsaved });
     const connected = this.provider.wsconnected && this.provider.synced;
     const phase: SavePhase = !connected
       ? this.state.loaded
         ? 'offline'
         : 'connecting'
-      : this.core.unacknowledged > 0
+      : unsaved
         ? 'saving'
         : 'saved';
-    this.set({ phase });
+    this.set({ phase, unsaved });
   }
 
   private peopleHere(): PersonHere[] {

@@ -96,7 +96,7 @@ function Page({
           aria-label="Margin"
           className="sticky top-0 z-10 flex flex-wrap items-center gap-x-6 gap-y-2 border-b bg-page py-2 wide:top-6 wide:order-2 wide:flex-col wide:items-start wide:self-start wide:border-0 wide:py-5 print:hidden"
         >
-          <SaveMark phase={state.phase} unsaved={collaboration.hasUnsaved} />
+          <SaveMark phase={state.phase} unsaved={state.unsaved} />
           <PeopleHere people={state.people} />
           {state.loaded && !mayWrite ? <p className="label text-muted">You may read this entry.</p> : null}
         </aside>

@@ -89,10 +89,14 @@ describe('what is saved', () => {
     server.reachable = false;
     server.last.end();
     await until('offline', () => phase() === 'offline');
-    expect(page.hasUnsaved).toBe(false);
+    expect(page.getState().unsaved).toBe(false);
+    let told = 0;
+    page.subscribe(() => (told += 1));
     type('during');
+    // The page is told, because what it shows changes: offline is one thing, offline with unsaved text another.
+    expect(told).toBe(1);
+    expect(page.getState()).toMatchObject({ phase: 'offline', unsaved: true });
     expect(page.hasUnsaved).toBe(true);
-    expect(phase()).toBe('offline');
     server.reachable = true;
     await saved();
     expect(page.hasUnsaved).toBe(false);
