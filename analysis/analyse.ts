@@ -24,6 +24,7 @@ import { decide, type Decision } from './verdict/decide';
 import { excludedWidth } from './verdict/excluded-size';
 import { chosen, fitFree, freeInterval, freeShape, withDriftDecided, type FreeFit } from './verdict/free-fit';
 import { report } from './verdict/report';
+import { stageDriftVariance } from './verdict/stage-drift';
 import { verdictSentence } from './verdict/sentence';
 import { resultWarnings } from './verdict/warnings';
 
@@ -134,7 +135,8 @@ interface Judged {
 /** The verdict, and the fits that it came from. */
 function judge({ steps, spectrum, prepared, settings, exposure, common }: JudgeInput): Judged {
   const tracks = prepared.tracks.length;
-  const onRuns = fitFree(spectrum, exposure, settings, common);
+  const stage = stageDriftVariance(common, prepared.dims);
+  const onRuns = fitFree(spectrum, exposure, settings, stage);
   const fit = chosen(spectrum, onRuns).fit;
   const bridged =
     fit.delta > 0
@@ -147,7 +149,7 @@ function judge({ steps, spectrum, prepared, settings, exposure, common }: JudgeI
       : { steps, filled: 0 };
   const series =
     bridged.filled > 0 ? spectrumOf(segmentsOf(bridged.steps).segments, prepared.dims) : spectrum;
-  const judged = bridged.filled > 0 ? fitFree(series, exposure, settings, common) : onRuns;
+  const judged = bridged.filled > 0 ? fitFree(series, exposure, settings, stage) : onRuns;
   const alternatives = alternativesOf(series, judged, exposure, tracks, settings, common?.present ?? false);
   const free = withDriftDecided(spectrum, onRuns, judged.driftSignificant, settings);
   const decision = decide({ ...judged, motionStatistic: free.motionStatistic }, alternatives, tracks);

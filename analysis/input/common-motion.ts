@@ -1,3 +1,4 @@
+import type { Segment } from './segments';
 import { CUT, type Steps } from './steps';
 
 /** Motion that all tracks of a reading share from frame to frame: the stage, or the camera. */
@@ -6,8 +7,8 @@ export interface CommonMotion {
   readonly variance: number;
   /** Its size in standard errors under independent tracks. */
   readonly z: number;
-  /** Frame steps that were seen, over all readings. */
-  readonly frames: number;
+  /** The shared path of each reading: mean displacements of successive frames less their mean, in unbroken runs. */
+  readonly path: readonly Segment[];
   /** Whether it is there: more than three tracks' worth of chance, and three tracks were seen together. */
   readonly present: boolean;
 }
@@ -44,7 +45,7 @@ export function findCommonMotion(steps: readonly Steps[], dims: number): CommonM
   const { spread, correlation } = spreadOf(steps, dims, means);
   if (!(spread > 0)) return null;
   const z = variance / (spread * Math.sqrt((2 * (1 + 2 * correlation ** 2)) / (dims * pairs)));
-  return { variance, z, frames: frames.size, present: most >= 3 && z > PRESENT_FROM };
+  return { variance, z, path: sharedPath(frames, dims), present: most >= 3 && z > PRESENT_FROM };
 }
 
 /**
@@ -79,6 +80,36 @@ export function removeCommonMotion(steps: readonly Steps[], dims: number): { ste
     return { ...own, gap, axes };
   });
   return { steps: corrected, alone };
+}
+
+/** Runs of frames in which at least two tracks were seen; `track` of a run is its reading. */
+function sharedPath(frames: ReadonlyMap<string, FrameSum>, dims: number): Segment[] {
+  const known = [...frames]
+    .filter(([, one]) => one.count >= 2)
+    .map(([key, one]) => {
+      const [reading, frame] = key.split(' ').map(Number) as [number, number];
+      return { reading, frame, one };
+    })
+    .sort((a, b) => a.reading - b.reading || a.frame - b.frame);
+  const runs: Segment[] = [];
+  for (let start = 0; start < known.length;) {
+    let end = start + 1;
+    while (
+      end < known.length &&
+      known[end]!.reading === known[start]!.reading &&
+      known[end]!.frame === known[end - 1]!.frame + 1
+    )
+      end += 1;
+    const run = known.slice(start, end);
+    runs.push({
+      track: run[0]!.reading,
+      displacements: Array.from({ length: dims }, (_, axis) =>
+        Float64Array.from(run, ({ one }) => one.sum[axis]! / one.count),
+      ),
+    });
+    start = end;
+  }
+  return runs;
 }
 
 /** The stage's path over some frames, less its mean; null where a frame has fewer than two tracks. */

@@ -7,7 +7,6 @@ import {
   type Shape,
   type TwoParameterFit,
 } from '../estimators/likelihood';
-import type { CommonMotion } from '../input/common-motion';
 import { profileInterval, type ProfileInterval } from '../estimators/profile-interval';
 import { displacementCovariance, freeMsd } from '../spectrum/models';
 import { stationarySpectrum } from '../spectrum/sine-transform';
@@ -48,12 +47,12 @@ const DRIFT_FROM = 4;
 /** Fewer coefficients than this say too little about their own spread. */
 const DISPERSION_FROM = 200;
 
-/** @param common - shared motion that was taken off; its mean stayed and adds to the chance of a drift. */
+/** @param stage - variance of the drift per axis and frame, µm², that the way of a shaking stage adds. */
 export function fitFree(
   spectrum: Spectrum,
   blurFraction: number,
   settings: AnalysisSettings,
-  common: CommonMotion | null = null,
+  stage = 0,
 ): FreeFit {
   const a = freeShape(spectrum, blurFraction);
   const b = noiseShape(spectrum);
@@ -66,7 +65,6 @@ export function fitFree(
   const dispersion = dispersionOf(spectrum, a, b, still);
   const raw = drifting ? Math.max(0, still.minus2LogL - drifting.fit.minus2LogL) : 0;
   const own = drifting ? drifting.se ** 2 : 0;
-  const stage = common?.present ? Math.max(0, common.variance) / common.frames : 0;
   const widening = own > 0 ? own / (own + stage) : 1;
   const driftStatistic = (raw * widening) / (1 + 1.8 * Math.min(relativeError, 1) ** 2) / dispersion;
   const driftThreshold = CHI2_975[spectrum.dims - 1]!;

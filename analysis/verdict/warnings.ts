@@ -74,7 +74,7 @@ export function resultWarnings(facts: WarningFacts): Warning[] {
   if (facts.sharedMotion?.removed) {
     look(
       'shared-motion',
-      `All tracks shake together from frame to frame, as a moving stage makes them; that was taken off.${facts.alone > 0 ? ` ${facts.alone} displacements without company could not be corrected and were left out.` : ''}`,
+      `All tracks shake together from frame to frame, as a moving stage makes them; that was taken off.${facts.alone > 0 ? ` ${facts.alone === 1 ? 'One displacement' : `${facts.alone} displacements`} in frames with one track could not be corrected and ${facts.alone === 1 ? 'was' : 'were'} left out.` : ''}`,
     );
   }
   if (

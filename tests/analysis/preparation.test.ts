@@ -4,6 +4,7 @@ import { fillGaps, LONGEST_FILLED } from '../../analysis/input/fill-gaps';
 import { cutMislinks } from '../../analysis/input/mislinks';
 import { segmentsOf } from '../../analysis/input/segments';
 import { CUT, stepsOf } from '../../analysis/input/steps';
+import { seededRandom } from '../../analysis/random';
 import { scenarioMaker, type Scenario } from '../../analysis/simulate/scenario';
 import type { Trajectories } from '../../analysis/types';
 import { apart, prepared, succeed } from './golden';
@@ -99,6 +100,19 @@ describe('motion that all tracks share', () => {
       reason: 'no other track in the frame',
       count: 30,
     });
+  });
+
+  test('a picture that only shakes hides no drift: jitter does not add up as a walk does', () => {
+    const shaking = scenarioMaker({ ...base, motion: { kind: 'flow', speed: 0.15 }, frames: 300 })(4);
+    const random = seededRandom(77);
+    const jitter = Array.from({ length: 300 }, () => [3 * random.gaussian(), 3 * random.gaussian()]);
+    const axes = shaking.axes.map((axis, at) =>
+      axis.map((value, row) => value + jitter[shaking.frame![row]!]![at]!),
+    );
+    const result = succeed([{ ...shaking, axes }]);
+    expect(result.sharedMotion).toMatchObject({ removed: true });
+    expect(result.verdict).toBe('directed');
+    expect(Math.abs(result.drift!.speed - 0.15)).toBeLessThan(0.08);
   });
 
   test('a stage does not turn free particles into drifting ones', () => {

@@ -1,25 +1,25 @@
 import { existsSync, readFileSync } from 'node:fs';
 import path from 'node:path';
 import { describe, expect, test } from 'vitest';
+import { applyStated, type Stated } from '../../analysis/intake/apply-stated';
 import { inspectFile } from '../../analysis/intake/inspect-file';
 import { readTrajectories } from '../../analysis/intake/read-trajectories';
 import type { Trajectories } from '../../analysis/types';
 import { succeed } from './golden';
 
 /**
- * Measured data that were published a century ago. They are not part of the project; where they lie beside it (see
+ * Measured data that others published. They are not part of the project; where they lie beside it (see
  * DEVELOPERS.md) they are used, elsewhere these tests are skipped with this reason.
  */
 const FOLDER = path.resolve(import.meta.dirname, '../../../shared/real');
 const present = existsSync(path.join(FOLDER, 'perrin1913_displacements_508.csv'));
-if (!present)
-  console.info(`skipped: the measured data of Perrin are not at ../shared/real beside the project`);
+if (!present) console.info(`skipped: there are no measured data at ../shared/real beside the project`);
 
-function load(name: string): Trajectories {
+function load(name: string, stated: Stated = {}): Trajectories {
   const bytes = new Uint8Array(readFileSync(path.join(FOLDER, name)));
   const inspection = inspectFile(bytes, name);
   if (inspection.failed) throw new Error(inspection.message);
-  const outcome = readTrajectories(bytes, inspection.spec);
+  const outcome = readTrajectories(bytes, applyStated(inspection, stated).spec);
   if (outcome.failed) throw new Error(outcome.message);
   return { ...outcome.trajectories, hash: name };
 }
@@ -53,3 +53,22 @@ describe.skipIf(!present)('Perrin’s grains (data files needed: ../shared/real)
     expect(result.D!.hi).toBeGreaterThan(0.35);
   });
 });
+
+test.skipIf(!present)(
+  'spheres that a flow carries while the picture shakes (data file needed: ../shared/real)',
+  () => {
+    // Imamura, Kent, Taylor & Bergbreiter 2024, arXiv 2412.15152, companion data: 11 spheres, mean velocity (1.78, −0.75) µm/s,
+    // speed 1.94 ± 0.16 µm/s between spheres; most of each step is shaking of the picture.
+    const result = succeed([load('flow_polystyrene_fiducials.csv', { pixelSize: '0.43164' })]);
+    expect(result.verdict).toBe('directed');
+    expect(Math.abs(result.drift!.speed - 1.94)).toBeLessThan(0.16);
+    expect(Math.abs(result.drift!.velocity[0]! - 1.78)).toBeLessThan(0.16);
+    expect(Math.abs(result.drift!.velocity[1]! + 0.75)).toBeLessThan(0.16);
+    const codes = [...result.warnings, ...result.checks.filter((one) => one.level !== 'fine')].map(
+      (one) => one.code,
+    );
+    expect(codes).toEqual(
+      expect.arrayContaining(['shared-motion', 'drift-ambiguous', 'spread-too-wide', 'one-d']),
+    );
+  },
+);
