@@ -12,6 +12,7 @@ const SOURCES = [
   'db',
   'public',
   'proxy.ts',
+  'instrumentation-client.ts',
   'next.config.mjs',
   'postcss.config.mjs',
   'tailwind.config.ts',
