@@ -55,7 +55,7 @@ export function msdSpec(result: AnalysisResult, scale: MsdScale): TopLevelSpec {
         encoding: { x, y: y('low'), y2: { field: 'high' } },
       },
       { name: 'points', mark: { type: 'point', color: colour('ink') }, encoding: { x, y: y('msd') } },
-      ...key(own),
+      ...key(own, scale === 'linear' && levelsOff(rows) ? 'lower right' : 'upper left'),
     ],
   };
 }
@@ -83,12 +83,25 @@ function forLogAxis(rows: readonly MsdRow[]): MsdRow[] {
   }));
 }
 
+/** Whether the fit has most of its height by the middle: then the upper left corner is not free. */
+function levelsOff(rows: readonly MsdRow[]): boolean {
+  const last = rows.at(-1);
+  const middle = last && rows.find((row) => row.tau >= last.tau / 2);
+  return middle !== undefined && middle.fit > 0.68 * last!.fit;
+}
+
+const KEY_WIDTH_PIXELS = 210;
+const KEY_HEIGHT_PIXELS = 42;
+
 /**
- * What is what, in the upper left corner, which a curve that rises from the origin leaves free on either scale. Positions
- * in pixels.
+ * What is what, in the corner that the curve leaves free: the upper left, for a curve that rises from the origin on either
+ * scale; the lower right for one that levels off. Positions in pixels.
  */
-function key(own: string): Layer[] {
-  const at = (x: number, y: number) => ({ x: { value: x }, y: { value: y } });
+function key(own: string, corner: 'upper left' | 'lower right'): Layer[] {
+  const down = corner === 'lower right';
+  const px = (x: number) => (down ? { value: { expr: `width - ${KEY_WIDTH_PIXELS - x}` } } : { value: x });
+  const py = (y: number) => (down ? { value: { expr: `height - ${KEY_HEIGHT_PIXELS - y}` } } : { value: y });
+  const at = (x: number, y: number) => ({ x: px(x), y: py(y) });
   const text = (words: string, y: number): Layer => ({
     mark: {
       type: 'text',
@@ -103,19 +116,19 @@ function key(own: string): Layer[] {
   const layers: Layer[] = [
     {
       mark: { type: 'rule', color: colour('muted'), aria: false },
-      encoding: { ...at(20, 3), y2: { value: 17 } },
+      encoding: { ...at(20, 3), y2: py(17) },
     },
     { mark: { type: 'point', color: colour('ink'), aria: false }, encoding: at(20, 10) },
     text('measured, with 95 % intervals', 10),
     {
       mark: { type: 'rect', color: own, opacity: chartConfig.area?.opacity as number, aria: false },
-      encoding: { ...at(10, 23), x2: { value: 30 }, y2: { value: 33 } },
+      encoding: { ...at(10, 23), x2: px(30), y2: py(33) },
     },
     {
       mark: { type: 'rule', color: own, strokeWidth: 1.5, aria: false },
-      encoding: { ...at(10, 28), x2: { value: 30 } },
+      encoding: { ...at(10, 28), x2: px(30) },
     },
-    text('fit, with the 95 % band of D', 28),
+    text('fit, with its 95 % band', 28),
   ];
   return layers.map((layer) => ({ ...layer, data: { values: [{}] } }));
 }

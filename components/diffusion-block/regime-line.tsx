@@ -48,7 +48,9 @@ function powerPart({ verdict, alpha }: AnalysisResult): ReactNode {
   if (verdict !== 'anomalous' || !alpha) return null;
   return (
     <>
-      Exponent <Quantity symbol="α" {...alpha} unit="" className="text-ink" />; MSD = 2·dimensions·K·τ^α.
+      Exponent <Quantity symbol="α" {...alpha} unit="" className="text-ink" />; MSD = 2·dimensions·
+      <i className="font-serif">Kτ</i>
+      <sup className="symbol">α</sup>.
     </>
   );
 }

@@ -22,7 +22,7 @@ export function ResultView({ result, outdated }: { result: AnalysisResult; outda
           {result.D ? (
             <Quantity symbol="D" {...result.D} unit="µm²/s" size="headline" className={dimmed} />
           ) : result.K ? (
-            <Quantity symbol="K" {...result.K} unit="µm²/s^α" size="headline" className={dimmed} />
+            <Quantity symbol="K" {...result.K} unit="µm²/s" power="α" size="headline" className={dimmed} />
           ) : (
             <span className={classes('text-heading text-muted', dimmed)}>No diffusion coefficient</span>
           )}

@@ -11,6 +11,7 @@ export function Quantity({
   lo = null,
   hi = null,
   unit,
+  power,
   digits = 3,
   size = 'running',
   className,
@@ -21,6 +22,8 @@ export function Quantity({
   hi?: number | null;
   /** E.g. "µm²/s"; empty for a pure number. */
   unit: string;
+  /** An exponent of the unit that is itself a symbol: "α" for µm²/s^α. */
+  power?: string;
   /** Significant digits where there is no interval to tell. */
   digits?: number;
   /** "headline": large in Merriweather with its interval small beside it. */
@@ -44,6 +47,7 @@ export function Quantity({
         {shown.value}
         {shown.scale}
         {unit ? THIN_SPACE + unit : null}
+        {power ? <sup className="symbol text-[0.65em]">{power}</sup> : null}
       </span>
       {shown.interval === null ? null : (
         <>

@@ -1,4 +1,4 @@
-import type { PersonRole } from '../policies/may';
+import type { MemberRole, PersonRole } from '../policies/may';
 
 /** The invented group of the demo, and its people. One password for all, printed at start and shown at sign-in. */
 export const DEMO_PASSWORD = 'drifting-motes-demo';
@@ -24,7 +24,44 @@ export const demoPeople: readonly DemoPerson[] = [
     admin: false,
     about: 'reads what is shared',
   },
+  { login: 'tove', name: 'Tove Brandvoll', role: 'researcher', admin: false, about: 'writes entries' },
+  {
+    login: 'ansel',
+    name: 'Ansel Rooke-Mbeki',
+    role: 'researcher',
+    admin: false,
+    about: 'witnesses what others write',
+  },
   { login: 'mateus', name: 'Mateus Quillfeather', role: 'researcher', admin: true, about: 'keeps the house' },
 ];
 
 export const demoEmail = (login: string): string => `${login}@tarnfield.example`;
+
+/** A notebook of the demo and who belongs to it. */
+export interface DemoNotebook {
+  readonly code: string;
+  readonly title: string;
+  readonly description: string;
+  readonly members: Readonly<Record<string, MemberRole>>;
+}
+
+export const demoNotebooks: readonly DemoNotebook[] = [
+  {
+    code: 'TRB',
+    title: 'Tracer beads and vesicles',
+    description: 'Reference beads, their daily checks, and first runs with lipid vesicles.',
+    members: { marenko: 'owner', noor: 'editor', keita: 'editor', ansel: 'witness', rosalind: 'reader' },
+  },
+  {
+    code: 'VIS',
+    title: 'Viscosity by tracer',
+    description: 'What beads of a known size say of the liquid that they are in.',
+    members: { marenko: 'owner', tove: 'editor', noor: 'editor', ansel: 'witness' },
+  },
+  {
+    code: 'WEL',
+    title: 'Wells, gels and crowds',
+    description: 'Motion that is not free: between walls, in soft gels, carried along.',
+    members: { marenko: 'owner', keita: 'editor', tove: 'editor', noor: 'reader', ansel: 'witness' },
+  },
+];

@@ -1,6 +1,7 @@
-import { sql } from 'drizzle-orm';
+import { eq, sql } from 'drizzle-orm';
 import pg from 'pg';
 import { connect, type Database } from '../client';
+import type { DocumentNode } from '../commands/entry/document-json';
 import { appendServerEdit } from '../commands/entry/write-document';
 import { startEntry } from '../commands/entry/start-entry';
 import { renameEntry } from '../commands/entry/rename-entry';
@@ -9,8 +10,9 @@ import { BLOCK_DEFAULTS } from '../inputs/block-settings';
 import type { Actor } from '../policies/may';
 import { findActor } from '../queries/login/find-actor';
 import { lab, login, notebook, notebookMember, person } from '../schema/index';
-import { DEMO_LAB, DEMO_PASSWORD, demoEmail, demoPeople } from './demo-accounts';
-import { demoEntries, type DemoEntry } from './demo-entries';
+import { DEMO_LAB, DEMO_PASSWORD, demoEmail, demoNotebooks, demoPeople } from './demo-accounts';
+import { demoEntries } from './demo-entries';
+import type { DemoBlock, DemoEntry } from './demo-plan';
 import { DemoVisitor } from './demo-visitor';
 
 export interface DemoContext {
@@ -60,22 +62,18 @@ async function makeGroup(db: Database): Promise<void> {
       )
       .returning({ id: person.id, login: person.login });
     const id = (name: string) => rows.find((row) => row.login === name)?.id ?? '';
-    const [tracers] = await tx
-      .insert(notebook)
-      .values({
-        code: 'TRB',
-        title: 'Tracer beads and vesicles',
-        description: 'Reference beads, their daily checks, and first runs with lipid vesicles.',
-        createdBy: id('marenko'),
-      })
-      .returning({ id: notebook.id });
-    const notebookId = tracers?.id ?? '';
-    await tx.insert(notebookMember).values([
-      { notebookId, personId: id('marenko'), role: 'owner' },
-      { notebookId, personId: id('noor'), role: 'editor' },
-      { notebookId, personId: id('keita'), role: 'editor' },
-      { notebookId, personId: id('rosalind'), role: 'reader' },
-    ]);
+    for (const { code, title, description, members } of demoNotebooks) {
+      const [made] = await tx
+        .insert(notebook)
+        .values({ code, title, description, createdBy: id('marenko') })
+        .returning({ id: notebook.id });
+      if (!made) throw new Error(`notebook ${code} was not made`);
+      await tx
+        .insert(notebookMember)
+        .values(
+          Object.entries(members).map(([name, role]) => ({ notebookId: made.id, personId: id(name), role })),
+        );
+    }
   });
 }
 
@@ -95,32 +93,32 @@ async function atDay(ownerUrl: string, daysAgo: number, run: () => Promise<void>
 async function makeEntry(db: Database, origin: string, plan: DemoEntry): Promise<void> {
   const visitor = await DemoVisitor.signIn(origin, plan.author, DEMO_PASSWORD);
   const actor = await newestActor(db, plan.author);
-  const [where] = await db.select({ id: notebook.id }).from(notebook);
+  const [where] = await db.select({ id: notebook.id }).from(notebook).where(eq(notebook.code, plan.notebook));
   const { entryId } = await startEntry(db, actor, { notebookId: where?.id ?? '' });
   await renameEntry(db, actor, { entryId, title: plan.title });
+  const append: DocumentNode[] = [];
+  for (const part of plan.parts) {
+    if (typeof part === 'string') append.push(paragraph(part));
+    else append.push(await makeBlock(visitor, entryId, part));
+  }
+  await db.transaction((tx) => appendServerEdit(tx, { entryId, actor, append }));
+  await visitor.signOut();
+}
+
+/** Uploads a block's file, confirms how it is read, and gives the node that shows it. */
+async function makeBlock(visitor: DemoVisitor, entryId: string, plan: DemoBlock) {
   const { attachmentId } = await visitor.upload(entryId, plan.file.name, plan.file.text);
   const { readingId } = await confirmReading(visitor, attachmentId, plan);
-  await db.transaction((tx) =>
-    appendServerEdit(tx, {
-      entryId,
-      actor,
-      append: [
-        ...plan.before.map(paragraph),
-        {
-          type: 'diffusionBlock',
-          attrs: {
-            ...BLOCK_DEFAULTS,
-            ...plan.settings,
-            blockId: crypto.randomUUID(),
-            readingIds: [readingId],
-            caption: plan.caption,
-          },
-        },
-        ...plan.after.map(paragraph),
-      ],
-    }),
-  );
-  await visitor.signOut();
+  return {
+    type: 'diffusionBlock',
+    attrs: {
+      ...BLOCK_DEFAULTS,
+      ...plan.settings,
+      blockId: crypto.randomUUID(),
+      readingIds: [readingId],
+      caption: plan.caption,
+    },
+  };
 }
 
 const paragraph = (text: string) => ({ type: 'paragraph', content: [{ type: 'text', text }] });
@@ -143,7 +141,7 @@ async function newestActor(db: Database, name: string): Promise<Actor> {
 async function confirmReading(
   visitor: DemoVisitor,
   attachmentId: string,
-  plan: DemoEntry,
+  plan: DemoBlock,
 ): Promise<{ readingId: string }> {
   const answer = (await visitor.json(`/api/attachments/${attachmentId}/intake`, {})) as {
     inspection: { spec: Record<string, unknown> };

@@ -120,7 +120,7 @@ describe('a result', () => {
     if ('failed' in outcome) throw new Error(outcome.message);
     page = await mount(attributes, answerOf([stateOf(attributes, { result: outcome })]));
     expect(outcome.verdict).toBe('anomalous');
-    expect(page.text()).toMatch(/K = [\d.]+ µm²\/s\^α/);
+    expect(page.text()).toMatch(/K = [\d.]+ µm²\/sα/);
     expect(page.text()).toContain('Exponent α = 0.');
     expect(page.text()).not.toMatch(/D = [\d.]+ µm²\/s \(/);
   });
