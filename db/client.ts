@@ -28,6 +28,8 @@ export function connect(url: string, options: { max: number; name: string }): Da
   });
   // An idle connection that dies (server restart) emits here; without a listener it would end the process.
   pool.on('error', (error) => console.error(`database connection lost (${options.name}): ${error.message}`));
+  // One that dies between two statements of a transaction emits by itself; the next statement fails and tells whoever waits.
+  pool.on('connect', (client) => client.on('error', () => undefined));
   return drizzle(pool, { schema });
 }
 

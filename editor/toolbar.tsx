@@ -4,6 +4,7 @@ import { useEditorState, type Editor } from '@tiptap/react';
 import { useRef, type KeyboardEvent } from 'react';
 
 interface Tool {
+  /** Contains the words on its face, so that it can be called by what is seen (WCAG 2.5.3). */
   readonly name: string;
   readonly face: string;
   readonly className?: string;
@@ -39,13 +40,13 @@ const TOOLS: readonly Tool[] = [
     run: (e) => e.chain().focus().toggleBulletList().run(),
   },
   {
-    name: 'Numbered list',
+    name: '1. 2. numbered list',
     face: '1. 2.',
     active: (e) => e.isActive('orderedList'),
     run: (e) => e.chain().focus().toggleOrderedList().run(),
   },
   {
-    name: 'Quotation',
+    name: 'Quote',
     face: 'Quote',
     active: (e) => e.isActive('blockquote'),
     run: (e) => e.chain().focus().toggleBlockquote().run(),

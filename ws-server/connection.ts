@@ -153,12 +153,13 @@ export class Connection implements Member {
       doc: room.doc,
       ownClient: this.client,
       ownKnown: room.known(this.client),
+      ownQueued: room.placedInQueue(this.client),
     });
     if (!check.ok) return this.refuse(frame, check.code);
     if (check.nothingNew) return this.send(ackFrame(frame, room.seq));
     if (!this.mayWrite(room.state))
       return this.refuse(frame, room.state === 'draft' ? 'forbidden' : 'locked');
-    room.queue(this.client, check.ownClock);
+    room.queue(this.client, check.ownClock, check.placed);
     this.context.flusher.add({
       entryId: room.entryId,
       epoch: room.epoch,

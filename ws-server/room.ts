@@ -11,6 +11,7 @@ import {
   type EntryState,
 } from './frames';
 import { encodePresence, type Presence } from './awareness';
+import type { Placed } from './check-update';
 import { readTail, type LoadedDocument } from '../db/queries/document/load-document';
 
 /** What a room needs of a socket. */
@@ -34,8 +35,8 @@ export class Room {
   state: string;
   seq: number;
   private readonly presence = new Map<number, Presence>();
-  /** Clock up to which each client's content is on its way into the store. */
-  private readonly queued = new Map<number, number>();
+  /** Each client's content on its way into the store: up to which clock, and where it stands. */
+  private readonly queued = new Map<number, { clock: number; placed: readonly Placed[] }>();
   /** Own updates that are committed but whose turn has not come: number → who wrote it and under which frame. */
   private readonly origins = new Map<number, { member: Member; frame: number }>();
   private reading: Promise<void> | null = null;
@@ -53,11 +54,17 @@ export class Room {
   }
 
   known(client: number): number {
-    return Math.max(Y.getState(this.doc.store, client), this.queued.get(client) ?? 0);
+    return Math.max(Y.getState(this.doc.store, client), this.queued.get(client)?.clock ?? 0);
   }
 
-  queue(client: number, clock: number): void {
-    this.queued.set(client, clock);
+  placedInQueue(client: number): readonly Placed[] {
+    return this.queued.get(client)?.placed ?? [];
+  }
+
+  queue(client: number, clock: number, placed: readonly Placed[]): void {
+    const stored = Y.getState(this.doc.store, client);
+    const before = this.placedInQueue(client).filter((one) => one.clock + one.length > stored);
+    this.queued.set(client, { clock, placed: [...before, ...placed] });
   }
 
   /** A queued update was refused: what was queued behind it hangs in the air, so the client must send anew. */

@@ -2,8 +2,7 @@ import 'server-only';
 import { randomUUID } from 'node:crypto';
 import { z } from 'zod';
 import { AppError, ERRORS, type Refusal } from '@/db/errors';
-
-const STORE_FAULTS = new Set(['ECONNREFUSED', 'ECONNRESET', '57P01', '57P03', '08006', '08003']);
+import { isDatabaseAway } from '@/db/is-database-away';
 
 /** Turns whatever was thrown into an answer for a person; the unexpected is logged with an id that the person sees too. */
 export function refuse(error: unknown, where: string): Refusal & { status: number } {
@@ -16,19 +15,9 @@ export function refuse(error: unknown, where: string): Refusal & { status: numbe
   }
   const incident = randomUUID().slice(0, 8);
   console.error(`[${incident}] ${where}:`, error);
-  const store = isStoreFault(error);
-  return { ...known(store ? 'storage-down' : 'unexpected'), incident };
+  return { ...known(isDatabaseAway(error) ? 'storage-down' : 'unexpected'), incident };
 }
 
 function known(code: keyof typeof ERRORS): Refusal & { status: number } {
   return { status: ERRORS[code].status, code, sentence: ERRORS[code].sentence, fields: {} };
-}
-
-function isStoreFault(error: unknown): boolean {
-  for (let at = error; at instanceof Error; at = at.cause) {
-    const code = (at as Error & { code?: unknown }).code;
-    if (typeof code === 'string' && STORE_FAULTS.has(code)) return true;
-    if (/Connection terminated|timeout exceeded when trying to connect/.test(at.message)) return true;
-  }
-  return false;
 }

@@ -78,8 +78,8 @@ async function firstAddress(child: ChildProcess, printed: () => string): Promise
   // A cold build takes minutes on a small machine; this is only the point at which waiting makes no sense any more.
   const deadline = Date.now() + 12 * 60_000;
   for (;;) {
-    const found = /https?:\/\/127\.0\.0\.1:\d+/.exec(printed());
-    if (found && (await answers(`${found[0]}/sign-in`))) return found[0];
+    const found = /is ready: (http:\/\/127\.0\.0\.1:\d+)/.exec(printed())?.[1];
+    if (found && (await answers(`${found}/sign-in`))) return found;
     if (child.exitCode !== null) throw new Error(`start ended with ${child.exitCode}:\n${printed()}`);
     if (Date.now() > deadline) throw new Error(`start never became ready:\n${printed()}`);
     await new Promise((resolve) => setTimeout(resolve, 250));

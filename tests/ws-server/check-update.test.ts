@@ -2,7 +2,7 @@ import { describe, expect, test } from 'vitest';
 import * as Y from 'yjs';
 import { BLOCK_DEFAULTS } from '../../db/inputs/block-settings';
 import { FRAGMENT } from '../../editor/schema/index';
-import { checkUpdate, type UpdateCheck } from '../../ws-server/check-update';
+import { checkUpdate, type Placed, type UpdateCheck } from '../../ws-server/check-update';
 import { LIMITS } from '../../ws-server/limits';
 
 /** What may enter the log (integrity rule C4): whatever passes here must be replayable, for ever. */
@@ -35,9 +35,14 @@ function added(doc: Y.Doc, change: () => void): Uint8Array {
 }
 
 /** The check against a server that holds `server`, with more of this page's on its way into the store where given. */
-function check(payload: Uint8Array, server: Y.Doc, queued = 0): UpdateCheck {
+function check(
+  payload: Uint8Array,
+  server: Y.Doc,
+  queued = 0,
+  ownQueued: readonly Placed[] = [],
+): UpdateCheck {
   const ownKnown = Math.max(Y.getState(server.store, OWN), queued);
-  return checkUpdate(payload, { doc: server, ownClient: OWN, ownKnown });
+  return checkUpdate(payload, { doc: server, ownClient: OWN, ownKnown, ownQueued });
 }
 const refused = (code: string) => ({ ok: false, code });
 
@@ -73,7 +78,7 @@ describe('what an honest page sends', () => {
     ];
     for (const change of changes) {
       const payload = added(page, change);
-      expect(check(payload, server)).toEqual({
+      expect(check(payload, server)).toMatchObject({
         ok: true,
         nothingNew: false,
         ownClock: Y.getState(page.store, OWN),
@@ -116,6 +121,88 @@ describe('what an honest page sends', () => {
     expect(check(second, server)).toEqual(refused('gap'));
     expect(check(second, server, clock)).toMatchObject({ ok: true, nothingNew: false });
     expect(check(first, server, clock)).toEqual({ ok: true, nothingNew: true });
+  });
+});
+
+describe('settings of a block', () => {
+  /** A server with a block that has this value already, and a page that has loaded it. */
+  function blockWith(attributes: Record<string, unknown>): {
+    server: Y.Doc;
+    page: Y.Doc;
+    block: Y.XmlElement;
+  } {
+    const server = docOf(OTHER);
+    const made = new Y.XmlElement('diffusionBlock');
+    root(server).insert(0, [made]);
+    for (const [name, value] of Object.entries(attributes)) made.setAttribute(name, value as string);
+    const page = docOf(OWN, server);
+    return { server, page, block: root(page).get(0) as Y.XmlElement };
+  }
+  const set = (block: Y.XmlElement, name: string, value: unknown) =>
+    block.setAttribute(name, value as string);
+
+  test('can be changed any number of times, also one that somebody else had set', () => {
+    const { server, page, block } = blockWith({ dims: 'auto', temperature: 25 });
+    for (const value of [20, 30, null, 25.5]) {
+      const payload = added(page, () => set(block, 'temperature', value));
+      expect(check(payload, server)).toMatchObject({ ok: true, nothingNew: false });
+      Y.applyUpdate(server, payload);
+    }
+    expect((root(server).get(0) as Y.XmlElement).getAttribute('temperature')).toBe(25.5);
+  });
+
+  test('can be changed twice in one frame, and twice before the first change is stored', () => {
+    const { server, page, block } = blockWith({ dims: 'auto' });
+    const both = added(page, () => {
+      set(block, 'dims', 1);
+      set(block, 'dims', 2);
+    });
+    // The first of the two is deleted already: of it only its length is sent.
+    expect(check(both, server)).toMatchObject({ ok: true, nothingNew: false });
+    const first = check(both, server);
+    if (!first.ok || first.nothingNew) throw new Error('not taken');
+    const second = added(page, () => set(block, 'dims', 3));
+    expect(check(second, server, first.ownClock, first.placed)).toMatchObject({
+      ok: true,
+      nothingNew: false,
+    });
+  });
+
+  test('of a block that others have removed meanwhile can be changed in vain', () => {
+    const { server, page, block } = blockWith({ dims: 'auto' });
+    root(server).delete(0, 1);
+    const payload = added(page, () => set(block, 'dims', 2));
+    expect(check(payload, server)).toMatchObject({ ok: true, nothingNew: false });
+    expect(replays(server, payload)).toBe(true);
+    Y.applyUpdate(server, payload);
+    expect(root(server).length).toBe(0);
+  });
+
+  test('an object put beside a letter is no setting, though it does not say where it stands', () => {
+    const server = docOf(OTHER);
+    paragraph(server, 'theirs');
+    const page = docOf(OWN, server);
+    const text = textOf(page);
+    const payload = added(page, () =>
+      page.transact((transaction) => {
+        const left = text._start;
+        if (!left) throw new Error('no letter');
+        const id = Y.createID(OWN, Y.getState(page.store, OWN));
+        const content = new Y.ContentAny([{ script: 'x' }]);
+        new Y.Item(id, left, left.lastId, left.right, left.right?.id ?? null, text, null, content).integrate(
+          transaction,
+          0,
+        );
+      }),
+    );
+    expect(replays(server, payload)).toBe(true);
+    expect(check(payload, server)).toEqual(refused('schema'));
+  });
+
+  test('a node or letters in the place of a setting are refused', () => {
+    const { server, page, block } = blockWith({ caption: 'x' });
+    const node = added(page, () => set(block, 'caption', new Y.XmlElement('paragraph')));
+    expect(check(node, server)).toEqual(refused('schema'));
   });
 });
 

@@ -45,6 +45,11 @@ export class DueEntries {
     this.forgetRested();
   }
 
+  /** What failed may be read at once: the fault lay elsewhere, and is mended. */
+  forgetFaults(): void {
+    for (const [entryId, { faults }] of this.rests) if (faults > 0) this.rests.delete(entryId);
+  }
+
   private forgetRested(): void {
     if (this.rests.size < 1000) return;
     for (const [entryId, { until, faults }] of this.rests) {

@@ -3,6 +3,7 @@ import { ENGINE_VERSION } from '../../analysis/analyse';
 import { connect, type Database } from '../../db/client';
 import { writeProjection } from '../../db/commands/projection/write-projection';
 import type { StoredFileRef } from '../../db/files/open-stored-file';
+import { isDatabaseAway } from '../../db/is-database-away';
 import { loadDocument } from '../../db/queries/document/load-document';
 import { AnalysisWorker } from '../../db/worker/analysis-worker';
 import { newAnalysisThread } from '../../db/worker/new-thread';
@@ -30,14 +31,22 @@ export interface RunningProjector {
 
 /** How often everything is looked at again, announced or not. */
 const SCAN_MS = 2_000;
+/** While the database is away: twice as long from time to time, up to this. Its first connection that is back ends the wait. */
+const LONGEST_SCAN_MS = 30_000;
 
 /**
  * Follows committed updates and writes text, blocks and current results of each entry (integrity rule 2.2a). It owns none
- * of the record: whatever it leaves undone, the next one finds and does. @throws Error when the database cannot be reached.
+ * of the record: whatever it leaves undone, the next one finds and does. A database that goes away later is waited for.
+ * @throws Error when the database cannot be reached now; nothing is left running.
  */
 export async function startProjector(options: ProjectorOptions): Promise<RunningProjector> {
   const projector = new Projector(options);
-  await projector.start();
+  try {
+    await projector.start();
+  } catch (error) {
+    await projector.stop();
+    throw error;
+  }
   return projector;
 }
 
@@ -48,7 +57,12 @@ class Projector implements RunningProjector {
   private readonly due = new DueEntries();
   private working: Promise<void> | null = null;
   private wake: NodeJS.Timeout | null = null;
-  private scanning: NodeJS.Timeout | null = null;
+  private scanning: Promise<void> | null = null;
+  private nextScan: NodeJS.Timeout | null = null;
+  /** Scans in a row that found the database away. */
+  private missed = 0;
+  /** Nothing is read from a database that is away; the scan finds out when it is back. */
+  private away = false;
   private stopped = false;
 
   constructor(options: ProjectorOptions) {
@@ -65,7 +79,10 @@ class Projector implements RunningProjector {
       options.databaseUrl,
       { motebook_update: (payload) => this.mark((JSON.parse(payload) as { entry: string }).entry) },
       // Whatever was announced while nobody listened is found by looking.
-      () => void this.scan(),
+      () => {
+        this.missed = 0;
+        void this.scan();
+      },
     );
   }
 
@@ -73,16 +90,16 @@ class Projector implements RunningProjector {
     await this.listener.start();
     for (const entryId of await findToAskAnew(this.db)) this.mark(entryId);
     await this.scan();
-    this.scanning = setInterval(() => void this.scan(), SCAN_MS);
   }
 
   async stop(): Promise<void> {
     this.stopped = true;
-    if (this.scanning) clearInterval(this.scanning);
+    if (this.nextScan) clearTimeout(this.nextScan);
     if (this.wake) clearTimeout(this.wake);
     await this.listener.stop();
     await this.results.stop();
     await this.working;
+    await this.scanning;
     await this.db.$client.end();
   }
 
@@ -93,26 +110,57 @@ class Projector implements RunningProjector {
 
   /** Reads marked entries one after the other, now those that may be read now, the others when they may. */
   private work(): void {
-    if (this.stopped || this.working) return;
+    if (this.stopped || this.away || this.working) return;
     if (this.wake) clearTimeout(this.wake);
     this.wake = null;
     this.working = this.projectDue().finally(() => {
       this.working = null;
       const next = this.due.nextInMs();
-      if (next !== null && !this.stopped) this.wake = setTimeout(() => this.work(), next);
+      if (next !== null && !this.stopped && !this.away) this.wake = setTimeout(() => this.work(), next);
     });
   }
 
-  private async scan(): Promise<void> {
-    if (this.stopped) return;
+  /** Looks at everything, one look at a time, and again after a while. */
+  private scan(): Promise<void> {
+    if (this.stopped || this.scanning) return this.scanning ?? Promise.resolve();
+    if (this.nextScan) clearTimeout(this.nextScan);
+    this.scanning = this.look().finally(() => {
+      this.scanning = null;
+      const pause = Math.min(LONGEST_SCAN_MS, SCAN_MS * 2 ** this.missed);
+      if (!this.stopped) this.nextScan = setTimeout(() => void this.scan(), pause);
+    });
+    return this.scanning;
+  }
+
+  private async look(): Promise<void> {
     try {
-      for (const entryId of await findBehind(this.db)) this.mark(entryId);
-      for (const entryId of await findWaiting(this.db)) {
-        if (!this.results.isBusyFor(entryId)) this.mark(entryId);
-      }
+      const behind = await findBehind(this.db);
+      const waiting = await findWaiting(this.db);
+      this.found();
+      for (const entryId of behind) this.mark(entryId);
+      for (const entryId of waiting) if (!this.results.isBusyFor(entryId)) this.mark(entryId);
     } catch (error) {
-      this.complain('looking for entries', error);
+      if (!this.lost(error)) this.complain('looking for entries', error);
+      else this.missed += 1;
     }
+  }
+
+  /** @returns whether the fault is that the database is away; told once, however much fails because of it. */
+  private lost(error: unknown): boolean {
+    if (!isDatabaseAway(error)) return false;
+    if (!this.away) this.complain('the database is away', error);
+    this.away = true;
+    return true;
+  }
+
+  private found(): void {
+    this.missed = 0;
+    if (!this.away) return;
+    this.away = false;
+    if (!this.stopped) console.log('projector, the database is back');
+    this.due.forgetFaults();
+    this.results.tryNow();
+    this.work();
   }
 
   private async projectDue(): Promise<void> {
@@ -122,10 +170,10 @@ class Projector implements RunningProjector {
         await this.project(entryId);
       } catch (error) {
         fault = true;
-        this.complain(`entry ${entryId}`, error);
+        if (!this.lost(error)) this.complain(`entry ${entryId}`, error);
       }
       this.due.done(entryId, fault);
-      if (this.stopped) return;
+      if (this.stopped || this.away) return;
     }
   }
 

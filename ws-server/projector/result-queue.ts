@@ -81,6 +81,12 @@ export class ResultQueue {
     return [...this.jobs.values()].some((job) => job.phase !== 'given-up' && job.entries.has(entryId));
   }
 
+  /** Tries again at once what rests after a setback: what set it back may be mended. */
+  tryNow(): void {
+    for (const job of this.jobs.values()) if (job.phase === 'resting') this.requeue(job);
+    this.fill();
+  }
+
   /** Takes up nothing more, and waits a little for what is under way: leaving it undone is safe, the next start does it. */
   async stop(): Promise<void> {
     this.stopped = true;
@@ -149,8 +155,7 @@ export class ResultQueue {
       const first = this.options.firstPauseMs ?? FIRST_PAUSE_MS;
       const pause = Math.min(LONGEST_PAUSE_MS, first * 2 ** (job.attempts - 1));
       job.timer = setTimeout(() => {
-        job.timer = null;
-        job.phase = 'queued';
+        this.requeue(job);
         this.fill();
       }, pause);
     }
@@ -158,6 +163,12 @@ export class ResultQueue {
       this.options.onNews([...job.entries]);
     }
     this.forgetIfUnasked(job.wanted.address, job);
+  }
+
+  private requeue(job: Job): void {
+    if (job.timer) clearTimeout(job.timer);
+    job.timer = null;
+    job.phase = 'queued';
   }
 
   private forgetIfUnasked(address: string, job: Job): void {

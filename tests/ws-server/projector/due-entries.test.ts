@@ -38,3 +38,19 @@ test('one that fails rests longer and longer, up to a bound, and holds up no oth
   due.mark('broken');
   expect(due.nextInMs()!).toBeLessThan(pauses[0]!);
 });
+
+test('once the fault is mended, what failed is read at once', () => {
+  let now = 0;
+  const due = new DueEntries(() => now);
+  for (let i = 0; i < 6; i++) {
+    due.mark('failed');
+    now += due.nextInMs()!;
+    expect(due.take()).toBe('failed');
+    due.done('failed', true);
+  }
+  due.mark('failed');
+  expect(due.take()).toBeNull();
+  due.forgetFaults();
+  expect(due.nextInMs()).toBe(0);
+  expect(due.take()).toBe('failed');
+});

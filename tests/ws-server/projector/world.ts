@@ -4,6 +4,7 @@ import { and, eq, sql } from 'drizzle-orm';
 import * as Y from 'yjs';
 import { inspectFile } from '../../../analysis/intake/inspect-file';
 import { readTrajectories } from '../../../analysis/intake/read-trajectories';
+import type { Database } from '../../../db/client';
 import { toShared, type DocumentNode } from '../../../db/commands/entry/document-json';
 import { seedEntry } from '../../../db/commands/entry/write-document';
 import { makeReading } from '../../../db/commands/file/make-reading';
@@ -106,20 +107,8 @@ export class World {
     return readingId;
   }
 
-  /** One committed update, as a browser of the author would make it. */
-  async edit(entryId: string, change: (root: Y.XmlFragment) => void): Promise<void> {
-    const loaded = await loadDocument(this.db, entryId);
-    if (!loaded) throw new Error('no such entry');
-    const { doc, epoch, lock } = loaded;
-    const before = Y.encodeStateVector(doc);
-    doc.transact(() => change(doc.getXmlFragment(FRAGMENT)));
-    const payload = Buffer.from(Y.encodeStateAsUpdate(doc, before));
-    const { personId } = this.author;
-    await this.db.execute(sql`SELECT register_client(${entryId}, ${epoch}, ${doc.clientID}, ${personId})`);
-    const { rows } = await this.db.execute<{ refusal: string | null }>(sql`
-      SELECT refusal FROM append_updates(${entryId}, ${lock}, ${epoch}, ${personId}, NULL,
-        ${randomUUID()}, ARRAY[${doc.clientID}]::bigint[], ARRAY[${payload}]::bytea[])`);
-    if (rows[0]?.refusal) throw new Error(`refused: ${rows[0].refusal}`);
+  edit(entryId: string, change: (root: Y.XmlFragment) => void): Promise<void> {
+    return editDocument(this.db, this.author, entryId, change);
   }
 
   append(entryId: string, ...nodes: DocumentNode[]): Promise<void> {
@@ -161,6 +150,26 @@ export class World {
       return rows.length === count;
     });
   }
+}
+
+/** One committed update, as a browser of this person would make it. */
+export async function editDocument(
+  db: Database,
+  { personId }: Actor,
+  entryId: string,
+  change: (root: Y.XmlFragment) => void,
+): Promise<void> {
+  const loaded = await loadDocument(db, entryId);
+  if (!loaded) throw new Error('no such entry');
+  const { doc, epoch, lock } = loaded;
+  const before = Y.encodeStateVector(doc);
+  doc.transact(() => change(doc.getXmlFragment(FRAGMENT)));
+  const payload = Buffer.from(Y.encodeStateAsUpdate(doc, before));
+  await db.execute(sql`SELECT register_client(${entryId}, ${epoch}, ${doc.clientID}, ${personId})`);
+  const { rows } = await db.execute<{ refusal: string | null }>(sql`
+    SELECT refusal FROM append_updates(${entryId}, ${lock}, ${epoch}, ${personId}, NULL,
+      ${randomUUID()}, ARRAY[${doc.clientID}]::bigint[], ARRAY[${payload}]::bytea[])`);
+  if (rows[0]?.refusal) throw new Error(`refused: ${rows[0].refusal}`);
 }
 
 function blockIn(root: Y.XmlFragment, blockId: string): Y.XmlElement {
