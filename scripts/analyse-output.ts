@@ -75,7 +75,7 @@ function explain({ file, result, description, remarks }: FileOutcome): string[] 
   const physics = [
     size?.diameter && `Apparent diameter ${digits(size.diameter.value)} µm.`,
     size?.apparentViscosity && `Apparent viscosity ${digits(size.apparentViscosity.value)} mPa·s.`,
-    size?.expectedD != null && `Expected D ${digits(size.expectedD)} µm²/s.`,
+    typeof size?.expectedD === 'number' && `Expected D ${digits(size.expectedD)} µm²/s.`,
   ].filter((line) => typeof line === 'string');
   const looks = result.checks.filter(({ level }) => level !== 'fine');
   const messages = [...remarks, ...result.warnings, ...looks].flatMap(({ message }) => message ?? []);

@@ -1,5 +1,5 @@
 import { mkdtempSync, rmSync } from 'node:fs';
-import { createServer, type Server } from 'node:http';
+import { createServer, type IncomingMessage, type Server, type ServerResponse } from 'node:http';
 import type { AddressInfo } from 'node:net';
 import { tmpdir } from 'node:os';
 import path from 'node:path';
@@ -63,7 +63,8 @@ beforeAll(async () => {
   // The web process makes its thread from the bundle; here the sources are run as they are.
   globalThis.motebookAnalysisWorker = new AnalysisWorker({ create: () => newAnalysisThread() });
   const uploads = await import('../../../app/api/uploadthing/route');
-  product.on('request', async (request, response) => {
+  product.on('request', (request, response) => void passOn(request, response));
+  const passOn = async (request: IncomingMessage, response: ServerResponse) => {
     const body: Buffer[] = [];
     for await (const chunk of request) body.push(chunk as Buffer);
     const answer = await uploads.POST(
@@ -76,7 +77,7 @@ beforeAll(async () => {
     response
       .writeHead(answer.status, Object.fromEntries(answer.headers))
       .end(Buffer.from(await answer.arrayBuffer()));
-  });
+  };
   entryId = await world.newEntry();
   people.author = world.author;
   for (const role of ['editor', 'reader', 'witness'] as const) {
