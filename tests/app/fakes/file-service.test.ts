@@ -6,7 +6,7 @@ import path from 'node:path';
 import { UTApi } from 'uploadthing/server';
 import { afterAll, beforeAll, beforeEach, describe, expect, test, vi } from 'vitest';
 import { until } from '../../helpers/collab-clients';
-import { API_KEY, APP_ID, hmac, ProductInSmall, RunningFake } from './running-fake';
+import { APP_ID, hmac, ProductInSmall, RunningFake } from './running-fake';
 
 /** The local stand-in of the file service as a process, called as the SDK and a browser call the hosted one. */
 let folder: string;
@@ -337,15 +337,9 @@ describe('an upload', () => {
 });
 
 describe('a stored file', () => {
-  async function stored(bytes: Buffer): Promise<string> {
-    const key = newKey();
-    expect((await send(fake.uploadUrl(key, bytes.length), bytes)).status).toBe(200);
-    return key;
-  }
-
   test('is given to signed addresses only, and not before all of it is there', async () => {
     const bytes = some(50_000);
-    const key = await stored(bytes);
+    const key = await fake.store(bytes);
     const response = await fetch(fake.downloadUrl(key));
     expect(response.status).toBe(200);
     expect(Buffer.from(await response.arrayBuffer()).equals(bytes)).toBe(true);
@@ -363,18 +357,12 @@ describe('a stored file', () => {
   });
 
   test('the real SDK signs an address that works, and its delete removes the bytes', async () => {
-    Object.assign(process.env, {
-      UPLOADTHING_INGEST_URL: fake.origin,
-      UPLOADTHING_API_URL: fake.origin,
-      UPLOADTHING_UFS_HOST: `localhost:${fake.port}`,
-      UPLOADTHING_UFS_APP_ID_LOCATION: 'path',
-    });
-    const token = { apiKey: API_KEY, appId: APP_ID, regions: ['local'], ingestHost: 'localhost' };
-    const api = new UTApi({ token: Buffer.from(JSON.stringify(token)).toString('base64') });
+    Object.assign(process.env, fake.environment);
+    const api = new UTApi({ token: fake.environment.UPLOADTHING_TOKEN });
     // The SDK warns of old fields in answers.
     vi.spyOn(console, 'warn').mockImplementation(() => undefined);
     const bytes = some(5000);
-    const key = await stored(bytes);
+    const key = await fake.store(bytes);
     const { ufsUrl } = await api.generateSignedURL(key, { expiresIn: '1 minute' });
     const response = await fetch(ufsUrl);
     expect(Buffer.from(await response.arrayBuffer()).equals(bytes)).toBe(true);

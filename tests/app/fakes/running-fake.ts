@@ -1,5 +1,5 @@
 import { spawn, type ChildProcess } from 'node:child_process';
-import { createHmac } from 'node:crypto';
+import { createHmac, randomBytes } from 'node:crypto';
 import { createServer, type IncomingMessage, type Server, type ServerResponse } from 'node:http';
 import type { AddressInfo } from 'node:net';
 import path from 'node:path';
@@ -37,14 +37,13 @@ export class RunningFake {
   }
 
   async begin(): Promise<void> {
-    const token = { apiKey: API_KEY, appId: APP_ID, regions: ['local'], ingestHost: 'localhost' };
     const child = spawn(process.execPath, ['--import', 'tsx', 'app/_server/fakes/file-service-main.ts'], {
       cwd: path.resolve(import.meta.dirname, '../../..'),
       env: {
         PATH: process.env.PATH ?? '',
         MOTEBOOK_FILES_PORT: String(this.port),
         MOTEBOOK_FILES_FOLDER: this.folder,
-        UPLOADTHING_TOKEN: Buffer.from(JSON.stringify(token)).toString('base64'),
+        ...this.environment,
       } as unknown as NodeJS.ProcessEnv,
       stdio: ['ignore', 'pipe', 'pipe'],
     });
@@ -108,6 +107,28 @@ export class RunningFake {
       body: JSON.stringify(body),
     });
     return { status: response.status, body: await response.json() };
+  }
+
+  /** Keeps a file of which no product is told. @returns its key. */
+  async store(bytes: Uint8Array): Promise<string> {
+    const key = randomBytes(24).toString('hex');
+    const form = new FormData();
+    form.append('file', new Blob([bytes as BlobPart]), 'file');
+    const response = await fetch(this.uploadUrl(key, bytes.length), { method: 'PUT', body: form });
+    if (!response.ok) throw new Error(await response.text());
+    return key;
+  }
+
+  /** What the SDK needs to find this service. */
+  get environment(): Record<string, string> {
+    const token = { apiKey: API_KEY, appId: APP_ID, regions: ['local'], ingestHost: 'localhost' };
+    return {
+      UPLOADTHING_TOKEN: Buffer.from(JSON.stringify(token)).toString('base64'),
+      UPLOADTHING_INGEST_URL: this.origin,
+      UPLOADTHING_API_URL: this.origin,
+      UPLOADTHING_UFS_HOST: `localhost:${this.port}`,
+      UPLOADTHING_UFS_APP_ID_LOCATION: 'path',
+    };
   }
 
   /** What the SDK registers before it hands an address to the browser. */
