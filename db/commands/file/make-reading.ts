@@ -1,4 +1,4 @@
-import { and, eq } from 'drizzle-orm';
+import { and, eq, sql } from 'drizzle-orm';
 import type { ReadingSpec, ReadingSummary } from '../../../analysis/intake/types';
 import type { Database } from '../../client';
 import { readingHash } from '../../integrity/addresses';
@@ -20,6 +20,8 @@ export async function makeReading(
   return db.transaction(async (tx) => {
     const file = await getAttachmentFor(tx, actor, input.attachmentId, 'reading.create');
     const hash = readingHash(file.sha256, input.spec);
+    // Confirmed twice at the same moment, it is still one: the second waits and finds what the first has made.
+    await tx.execute(sql`SELECT pg_advisory_xact_lock(hashtextextended(${`reading ${file.id} ${hash}`}, 0))`);
     const [known] = await tx
       .select({ id: reading.id })
       .from(reading)
