@@ -9,7 +9,7 @@ export function toSafeCsv(
   rows: readonly (readonly (string | number)[])[],
 ): string {
   const safe = (cell: string | number) => (typeof cell === 'string' && isRisky(cell) ? `'${cell}` : cell);
-  return `${Papa.unparse([[...header], ...rows.map((row) => row.map(safe))], { newline: '\r\n' })}\r\n`;
+  return `${Papa.unparse([header.map(safe), ...rows.map((row) => row.map(safe))], { newline: '\r\n' })}\r\n`;
 }
 
 function isRisky(text: string): boolean {

@@ -1,7 +1,7 @@
 import { createServer, type IncomingMessage, type ServerResponse } from 'node:http';
 import type { AddressInfo } from 'node:net';
 import { FileStore, type StoredFile } from './file-store';
-import { appendSinglePart } from './multipart';
+import { Incoming } from './incoming';
 import { addressFault, sign } from './signature';
 
 /**
@@ -49,6 +49,7 @@ export async function startFileService(options: FileServiceOptions): Promise<Run
 
 class FileService {
   private readonly store: FileStore;
+  private readonly incoming = new Incoming();
   /** Completions under way: the same file may be asked for twice, but is completed once. */
   private readonly completing = new Map<string, Promise<unknown>>();
   private readonly results = new Map<string, (result: unknown) => void>();
@@ -59,8 +60,9 @@ class FileService {
 
   async answer(request: IncomingMessage, response: ServerResponse): Promise<void> {
     const target = request.url ?? '/';
-    const { pathname } = new URL(target, 'http://localhost');
     allowBrowsers(response);
+    if (!URL.canParse(target, 'http://localhost')) return json(response, 400, { error: 'not an address' });
+    const { pathname } = new URL(target, 'http://localhost');
     if (request.method === 'OPTIONS') return void response.writeHead(204).end();
     if (request.method === 'POST') {
       if (request.headers['x-uploadthing-api-key'] !== this.options.apiKey)
@@ -75,6 +77,7 @@ class FileService {
     const fault = addressFault(`http://${request.headers.host}`, target, this.options.apiKey);
     if (fault) return json(response, 403, { error: fault });
     if (request.method === 'HEAD') {
+      await this.incoming.breakOff(key);
       return void response.writeHead(200, { 'x-ut-range-start': String(this.store.stored(key)) }).end();
     }
     if (request.method === 'PUT') return this.put(request, target, key, response);
@@ -83,7 +86,9 @@ class FileService {
 
   private post(pathname: string, body: Record<string, unknown>, response: ServerResponse): void {
     if (pathname === '/route-metadata') {
-      for (const key of body.fileKeys as string[]) {
+      const keys = Array.isArray(body.fileKeys) ? body.fileKeys.map(String) : [];
+      if (!keys.every((key) => FileStore.isKey(key))) return json(response, 400, { error: 'not a key' });
+      for (const key of keys) {
         const before = this.store.find(key);
         const route = {
           metadata: body.metadata,
@@ -115,27 +120,29 @@ class FileService {
   ): Promise<void> {
     const query = new URL(target, 'http://localhost').searchParams;
     const read = (name: string) => (query.has(name) ? decodeURIComponent(query.get(name)!) : null);
-    const size = Number(read('x-ut-file-size'));
+    const size = read('x-ut-file-size');
     const boundary = /boundary="?([^";]+)"?/.exec(request.headers['content-type'] ?? '')?.[1];
     const start = Number(/^bytes=(\d+)-$/.exec(request.headers.range ?? 'bytes=0-')?.[1]);
-    if (!boundary || !(size >= 0))
+    if (!boundary || size === null || !/^\d+$/.test(size))
       return json(response, 400, { error: 'not a multipart upload with a size' });
+    const expected = Number(size);
+    await this.incoming.breakOff(key);
     if (start !== this.store.stored(key)) {
       return json(response, 416, { error: `expected to go on at byte ${this.store.stored(key)}` });
     }
-    const honest = await appendSinglePart(request, boundary, this.store.bytesPath(key), size - start);
-    const arrived = this.store.stored(key);
-    if (!honest) {
-      this.store.remove(key);
-      return json(response, 400, { error: 'more bytes than announced' });
+    if (start > 0 && start === expected) {
+      // All of it is here: nothing that is sent once more can spoil it.
+      request.resume();
+    } else {
+      const fault = await this.takeIn(request, key, boundary, expected - start);
+      if (fault === 'gone') return void response.destroy();
+      if (fault) return json(response, 400, { error: fault });
     }
-    // The sender has gone; it will ask how far it came and go on from there.
-    if (arrived < size) return void response.destroy();
     const known = this.store.find(key) ?? emptyFile(key);
     const file: StoredFile = {
       ...known,
       name: read('x-ut-file-name') ?? 'file',
-      size,
+      size: expected,
       type: read('x-ut-file-type') ?? 'application/octet-stream',
       customId: read('x-ut-custom-id'),
       slug: read('x-ut-slug'),
@@ -145,6 +152,24 @@ class FileService {
     // The service's own address: where the product says that it has dealt with the file.
     const answer = await this.complete(file, `http://${request.headers.host}`);
     json(response, 'error' in (answer as object) ? 400 : 200, answer);
+  }
+
+  /** @returns null when the file is complete, else why not; 'gone' when the sender will come back and go on. */
+  private async takeIn(
+    request: IncomingMessage,
+    key: string,
+    boundary: string,
+    missing: number,
+  ): Promise<string | null> {
+    const before = this.store.stored(key);
+    const file = this.store.bytesPath(key);
+    const arrival = await this.incoming.receive(request, key, { boundary, file, expected: missing });
+    if (arrival === 'too-much') {
+      this.store.removeBytes(key);
+      return 'more bytes than announced';
+    }
+    if (this.store.stored(key) === before + missing) return null;
+    return arrival === 'whole' ? 'fewer bytes than announced' : 'gone';
   }
 
   /** Calls the product back and waits for what it has to say; once a file. */

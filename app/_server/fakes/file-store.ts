@@ -66,9 +66,14 @@ export class FileStore {
 
   remove(key: string): boolean {
     if (!this.find(key)) return false;
-    for (const file of [this.bytesPath(key), path.join(this.folder, `${key}.json`)])
-      if (existsSync(file)) unlinkSync(file);
+    this.removeBytes(key);
+    unlinkSync(path.join(this.folder, `${key}.json`));
     return true;
+  }
+
+  /** Forgets what has arrived; what the product registered stays, so that the upload can begin again. */
+  removeBytes(key: string): void {
+    if (existsSync(this.bytesPath(key))) unlinkSync(this.bytesPath(key));
   }
 
   md5(key: string): Promise<string> {

@@ -20,8 +20,16 @@ export function addressFault(origin: string, target: string, key: string, now = 
   const at = target.lastIndexOf('signature=');
   if (at < 1) return 'not signed';
   const signed = origin + target.slice(0, at - 1);
-  if (!isSigned(signed, decodeURIComponent(target.slice(at + 'signature='.length)), key))
-    return 'wrong signature';
+  if (!isSigned(signed, decoded(target.slice(at + 'signature='.length)), key)) return 'wrong signature';
   const expires = Number(new URL(origin + target).searchParams.get('expires'));
   return Number.isFinite(expires) && expires > now ? null : 'expired';
+}
+
+/** Text without its percent signs; one that cannot be decoded is signed by nobody. */
+function decoded(text: string): string {
+  try {
+    return decodeURIComponent(text);
+  } catch {
+    return '';
+  }
 }
