@@ -14,7 +14,7 @@ export interface CommonMotion {
 }
 
 /** Two-sided chance of one in a thousand. Measured under independent tracks: mean −0.1, standard deviation 0.96. */
-const PRESENT_FROM = 3.3;
+export const PRESENT_FROM = 3.3;
 
 interface FrameSum {
   count: number;

@@ -30,15 +30,22 @@ export interface Decision {
 }
 
 /** 5 %, one-sided at the boundary: below this, motion is not resolved above the localisation error. */
-const MOTION_RESOLVED = 2.71;
+export const MOTION_RESOLVED = 2.71;
 /** Equivalence test (Schuirmann 1987, J. Pharmacokinet. Biopharm. 15:657): both ends must be excluded at 5 %. */
-const ENDS_EXCLUDED = 2.71;
+export const ENDS_EXCLUDED = 2.71;
 /** The best model must beat the second by this much in −2 ln L: about e² to 1 in likelihood, as an information criterion asks. */
-const CLEARLY_BETTER = 2;
+export const CLEARLY_BETTER = 2;
+
+/** −2 ln likelihood ratio from which a departure is seen: of one track, and of several. Calibrated by simulation. */
+export const DEPARTS_FROM = { one: 5.9, several: 6.3 } as const;
+/** An interval of D wider than this relative standard error supports no verdict. */
+export const PRECISE_TO = 0.5;
+/** Exponents that free diffusion must be told from. */
+export const ALPHA_ENDS = [0.5, 1.5] as const;
 
 /** @param free - fitted to what is judged: filled gaps, shared motion taken off.   @param tracks - how many there are. */
 export function decide(free: FreeFit, alternatives: Alternatives | null, tracks: number): Decision {
-  const departureThreshold = tracks === 1 ? 5.9 : 6.3;
+  const departureThreshold = tracks === 1 ? DEPARTS_FROM.one : DEPARTS_FROM.several;
   const none = { departure: 0, departureThreshold, rivals: [], withDrift: false };
   if (alternatives === null) return { verdict: 'undecided', ground: 'two-point-tracks', ...none };
   if (free.motionStatistic <= MOTION_RESOLVED) return { verdict: 'undecided', ground: 'no-motion', ...none };
@@ -69,9 +76,9 @@ export function decide(free: FreeFit, alternatives: Alternatives | null, tracks:
   }
   if (free.driftSignificant) return { verdict: 'directed', ground: 'common-drift', ...common, rivals: [] };
   const { alpha, statisticAtHalf, statisticAtOneAndHalf } = alternatives.anomalous;
-  const nearOne = alpha.value > 0.5 && alpha.value < 1.5;
+  const nearOne = alpha.value > ALPHA_ENDS[0] && alpha.value < ALPHA_ENDS[1];
   if (nearOne && statisticAtHalf >= ENDS_EXCLUDED && statisticAtOneAndHalf >= ENDS_EXCLUDED) {
-    if (free.relativeError < 0.5) return { verdict: 'free', ground: 'free', ...common, rivals: [] };
+    if (free.relativeError < PRECISE_TO) return { verdict: 'free', ground: 'free', ...common, rivals: [] };
     return { verdict: 'undecided', ground: 'imprecise', ...common, rivals: [] };
   }
   return { verdict: 'undecided', ground: 'cannot-exclude', ...common, rivals: [] };

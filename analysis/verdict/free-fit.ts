@@ -41,7 +41,7 @@ export interface FreeFit {
 }
 
 /** χ² with 1, 2, 3 degrees of freedom, 97.5 %. Source: NIST/SEMATECH e-Handbook 1.3.6.7.4. */
-const CHI2_975 = [5.023886, 7.377759, 9.348404] as const;
+export const CHI2_975 = [5.023886, 7.377759, 9.348404] as const;
 /** A drift takes one number an axis away from D and σ²; of fewer displacements nothing would be left to judge by. */
 const DRIFT_FROM = 4;
 /** Fewer coefficients than this say too little about their own spread. */

@@ -33,12 +33,41 @@ export function Provenance({
         </div>
       ))}
       {result ? (
-        <p>
-          Computed by {result.engine.replace('/', ' ')}
-          {when}.
-        </p>
+        <>
+          <p>
+            Computed by {result.engine.replace('/', ' ')}
+            {when}.
+          </p>
+          <How result={result} />
+        </>
       ) : null}
     </div>
+  );
+}
+
+/** Where each number of the block is explained. */
+function How({ result }: { result: AnalysisResult }) {
+  const links = [
+    ['/methods#d', 'D and its interval'],
+    ['/methods#verdict', 'the verdict'],
+    ...(result.confinement ? [['/methods#confinement', 'the size']] : []),
+    ...(result.sigma === null ? [] : [['/methods#localisation', 'the localisation error']]),
+    ...(result.stokesEinstein ? [['/methods#size', 'size and viscosity']] : []),
+    ['/methods#msd', 'the chart'],
+  ] as const;
+  return (
+    <p className="print:hidden">
+      How these come about:{' '}
+      {links.map(([href, words], at) => (
+        <span key={href}>
+          {at > 0 ? ', ' : null}
+          <a href={href} target="_blank" className="underline underline-offset-4 hover:text-ink">
+            {words}
+          </a>
+        </span>
+      ))}
+      .
+    </p>
   );
 }
 

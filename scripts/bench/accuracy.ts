@@ -148,6 +148,6 @@ if (values.write) {
     'Simulated data, two dimensions, full exposure, D = Δt = 1; x = σ²/(DΔt). right/wrong/free/unclear in percent; heldD, heldOther: percent of 95 % intervals of D and of the width or exponent that hold the truth. Remade by: npm run bench:accuracy';
   writeFileSync(
     new URL('../../analysis/accuracy.json', import.meta.url),
-    `${JSON.stringify({ engine: ENGINE_VERSION, about, cells }, null, 1)}\n`,
+    `${JSON.stringify({ engine: ENGINE_VERSION, about, cells }, null, 2)}\n`,
   );
 }

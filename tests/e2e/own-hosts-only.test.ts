@@ -75,6 +75,16 @@ describe.each(['light', 'dark'] as const)('in the %s theme', (theme) => {
     await look('Measurements');
     await open('/measurements?dFrom=1000000');
     await look('Measurements without a finding');
+    await open('/search?q=beads');
+    await page.locator('mark').first().waitFor();
+    await look('Search');
+    await page.keyboard.press('Control+,');
+    await page.getByRole('combobox').fill('beads');
+    await page.getByRole('option').first().waitFor();
+    await look('Go to');
+    await page.keyboard.press('Escape');
+    await open('/methods');
+    await look('Methods');
 
     await open(((await page.goto(`${url}/measurements`)) && (await first.getAttribute('href'))) ?? '');
     await blocksDrawn(page);
