@@ -56,7 +56,7 @@ export const demoNotebooks: readonly DemoNotebook[] = [
     code: 'VIS',
     title: 'Viscosity by tracer',
     description: 'What beads of a known size say of the liquid that they are in.',
-    members: { marenko: 'owner', tove: 'editor', noor: 'editor', ansel: 'witness' },
+    members: { marenko: 'owner', tove: 'editor', noor: 'reader', ansel: 'witness' },
   },
   {
     code: 'WEL',

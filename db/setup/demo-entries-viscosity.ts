@@ -82,7 +82,7 @@ export function viscosityEntries(): DemoEntry[] {
     },
     {
       notebook: 'VIS',
-      author: 'noor',
+      author: 'tove',
       daysAgo: 2,
       title: 'Syrup of unknown strength',
       parts: [
