@@ -13,13 +13,11 @@ import { apart, succeed } from './golden';
  * factors instead of sine transforms, another optimiser, sums by slices. Needs python3 with both (Debian: python3-numpy,
  * python3-scipy).
  */
-const present = spawnSync('python3', ['-c', 'import numpy, scipy'], { encoding: 'utf8' });
-const missing = present.status !== 0;
-if (missing) {
-  console.log(
-    `Second opinion skipped: ${present.error?.message ?? present.stderr.trim().split('\n').at(-1) ?? 'no python3'}`,
-  );
-}
+const hasBoth = (python: string) => spawnSync(python, ['-c', 'import numpy, scipy']).status === 0;
+// Debian's own first: its packages are no use to another python that may stand before it in the path.
+const python = ['/usr/bin/python3', 'python3'].find(hasBoth);
+const missing = python === undefined;
+if (missing) console.log('skipped: the second opinion, because no python3 with numpy and scipy was found');
 
 interface Opinion {
   readonly msd: readonly number[];
@@ -65,7 +63,7 @@ describe.skipIf(missing)('a second opinion by numpy and scipy', () => {
   const opinions = missing
     ? []
     : (JSON.parse(
-        spawnSync('python3', [fileURLToPath(new URL('second-opinion.py', import.meta.url))], {
+        spawnSync(python, [fileURLToPath(new URL('second-opinion.py', import.meta.url))], {
           encoding: 'utf8',
           input: JSON.stringify(CASES),
           // Small matrices: threads would only wait for each other.
