@@ -79,6 +79,7 @@ export function PersonMenu({
           }}
         />
         <MenuRule />
+        <MenuItem onSelect={() => router.push('/planner')}>Plan a measurement</MenuItem>
         <MenuItem onSelect={() => router.push('/methods')}>How numbers come about</MenuItem>
         <MenuItem onSelect={() => void leave()}>Sign out</MenuItem>
       </Menu>

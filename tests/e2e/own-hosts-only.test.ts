@@ -85,6 +85,8 @@ describe.each(['light', 'dark'] as const)('in the %s theme', (theme) => {
     await page.keyboard.press('Escape');
     await open('/methods');
     await look('Methods');
+    await open('/planner');
+    await look('Planner');
 
     await open(((await page.goto(`${url}/measurements`)) && (await first.getAttribute('href'))) ?? '');
     await blocksDrawn(page);
