@@ -18,7 +18,8 @@ export interface Answer {
 
 const POWER = 0.8;
 const two = (value: number) => Number(value.toPrecision(2)).toString();
-const percent = (share: number) => `${Math.round(100 * share)} %`;
+const percent = (share: number) =>
+  share > 0.99 ? 'more than 99\u00a0%' : `${Math.round(100 * share)}\u00a0%`;
 const tracks = (n: number) =>
   Number.isFinite(n) && n < 1e6
     ? `${n.toLocaleString('en')} ${n === 1 ? 'track' : 'tracks'}`
@@ -31,7 +32,7 @@ export function precisionAnswers(plan: Plan): Answer[] {
   return [
     {
       question: 'How well will D be known?',
-      answer: `To ${two(100 * relative)} % (standard error); the 95 % interval reaches about ${two(100 * (Math.exp(1.96 * relative) - 1))} % above and ${two(100 * (1 - Math.exp(-1.96 * relative)))} % below.`,
+      answer: `To ${two(100 * relative)}\u00a0% (standard error); the 95 % interval reaches about ${two(100 * (Math.exp(1.96 * relative) - 1))}\u00a0% above and ${two(100 * (1 - Math.exp(-1.96 * relative)))}\u00a0% below.`,
     },
     {
       question: 'How many tracks for 10 %, for 5 %, for 2 %?',
@@ -43,7 +44,7 @@ export function precisionAnswers(plan: Plan): Answer[] {
       question: 'How well will the localisation error be known?',
       answer:
         plan.sigma > 0
-          ? `To ${two((50 * sigma2) / plan.sigma ** 2)} % of σ. σ²/(DΔt) is ${two(x)}; above 1 most of a displacement is error, and slower frames lose little.`
+          ? `To ${two((50 * sigma2) / plan.sigma ** 2)}\u00a0% of σ. σ²/(DΔt) is ${two(x)}; above 1 most of a displacement is error, and slower frames lose little.`
           : `σ below ${two(1000 * Math.sqrt(2 * sigma2))} nm cannot be told from none.`,
     },
   ];

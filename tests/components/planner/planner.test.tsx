@@ -20,7 +20,7 @@ const plan = {
 describe('answers', () => {
   test('say what the bound of theory says', () => {
     const [first, tracks] = precisionAnswers(plan);
-    expect(first!.answer).toContain(`${Number((100 * precisionOf(plan).relative).toPrecision(2))} %`);
+    expect(first!.answer).toContain(`${Number((100 * precisionOf(plan).relative).toPrecision(2))}\u00a0%`);
     const needed = tracks!.answer
       .split(', as')[0]!
       .split(', ')
@@ -40,7 +40,7 @@ describe('answers', () => {
   });
 
   test('more data see more', () => {
-    const share = (text: string) => Number(/(\d+) %/.exec(text)?.[1]);
+    const share = (text: string) => Number(/(\d+)\s%/.exec(text)?.[1]);
     const few = reachAnswers({ ...plan, tracks: 2 }).map(({ answer }) => share(answer));
     const many = reachAnswers({ ...plan, tracks: 60 }).map(({ answer }) => share(answer));
     for (let i = 1; i < few.length; i++) expect(many[i]).toBeGreaterThanOrEqual(few[i]!);
