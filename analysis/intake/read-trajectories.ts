@@ -34,25 +34,28 @@ export function readTrajectories(bytes: Uint8Array, spec: ReadingSpec): ReadOutc
     ? readBytes(bytes, data, spec, collector)
     : readText(bytes, spec, collector);
   if (failed) return failed;
-  if (collector.count === 0) {
-    const first = collector.problems[0];
-    return intakeFailure(
-      'no-rows',
-      `Not one row could be read with these columns${first ? ` (line ${first.line}: ${first.reason})` : ''}. Check which columns were chosen, and the decimal mark.`,
-      first?.line ?? spec.dialect.firstDataLine,
-    );
-  }
   const trajectories = collector.trajectories();
+  const summary = summarise(trajectories, collector.problemCount);
+  // Rows without a whole position keep their place, but a file of nothing else says nothing.
+  if (summary.tracks === 0) return nothingRead(collector, spec);
   const contradiction = contradictionOf(trajectories, spec.frameInterval);
   if (contradiction) return contradiction;
   return {
     failed: false,
     trajectories,
-    summary: summarise(trajectories, collector.problemCount),
+    summary,
     problems: collector.problems,
     problemCount: collector.problemCount,
     paths: previewPaths(trajectories),
   };
+}
+
+function nothingRead({ problems: [first] }: RowCollector, { dialect }: ReadingSpec): IntakeFailure {
+  return intakeFailure(
+    'no-rows',
+    `Not one row could be read with these columns${first ? ` (line ${first.line}: ${first.reason})` : ''}. Check which columns were chosen, and the decimal mark.`,
+    first?.line ?? dialect.firstDataLine,
+  );
 }
 
 /** How rows come: from a text, or straight from bytes. */

@@ -30,6 +30,7 @@ export async function uploadFile(
       onUploadProgress: ({ progress }) => onProgress(progress),
     });
     if (!done?.serverData) throw new Error('the file service gave no answer');
+    if ('refused' in done.serverData) throw new Error(done.serverData.refused);
     const { attachmentId, name, bytes } = done.serverData;
     return { attachmentId, name, bytes };
   } catch (error) {

@@ -35,7 +35,9 @@ function asUploadError(error: unknown): UploadThingError {
 
 /** Uploads that the product knows. The content decides what a file is, so any declared type may come. */
 export const uploads = {
-  trajectory: build({ blob: { maxFileSize: MAX_UPLOAD_SIZE, maxFileCount: 1 } })
+  trajectory: build({
+    blob: { maxFileSize: MAX_UPLOAD_SIZE, maxFileCount: 1, contentDisposition: 'attachment' },
+  })
     .input(z.object({ entryId: z.uuid() }))
     .middleware(async ({ req, files, input }) => {
       try {
@@ -43,14 +45,17 @@ export const uploads = {
           throw new AppError('foreign-origin');
         const actor = await findCurrentActor();
         if (!actor) throw new AppError('not-signed-in');
-        const file = files[0];
-        if (!file) throw new AppError('bad-input', { sentence: 'No file was sent.' });
+        const [file, ...more] = files;
+        if (!file || more.length > 0)
+          throw new AppError('bad-input', { sentence: 'Files are taken one by one.' });
         if (file.size > MAX_UPLOAD_BYTES) {
           const size = (file.size / 1024 / 1024).toFixed(1);
           throw new AppError('too-big', {
             sentence: `"${file.name}" has ${size} MB; up to ${MAX_UPLOAD_BYTES / 1024 / 1024} MB can be read at the moment. Export fewer columns or fewer tracks, or split it.`,
           });
         }
+        if (!Number.isInteger(file.size) || file.size < 0)
+          throw new AppError('bad-input', { sentence: 'The size of the file is not a number of bytes.' });
         return await startUpload(db(), actor, { entryId: input.entryId, name: file.name, bytes: file.size });
       } catch (error) {
         throw asUploadError(error);
@@ -69,7 +74,13 @@ export const uploads = {
         });
         return { ...finished };
       } catch (error) {
-        refuse(error, 'upload callback');
+        // The browser waits elsewhere; what is not said here is said nowhere.
+        if (!(error instanceof AppError)) refuse(error, 'upload callback');
+        else {
+          console.error(`upload callback: ${error.code}, ${error.message}`);
+          // It would be refused again however often it is told; the rest may mend itself, so it is not answered.
+          if (error.status < 500) return { refused: error.sentence };
+        }
         throw error;
       }
     }),

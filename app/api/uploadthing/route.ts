@@ -11,7 +11,8 @@ function handler(): Handlers {
   const callbackUrl = `${new URL(env().NEXTAUTH_URL).origin}/api/uploadthing`;
   handlers ??= createRouteHandler({
     router: uploads,
-    config: { token: env().UPLOADTHING_TOKEN, callbackUrl },
+    // At its own level the SDK writes every signed address into the log.
+    config: { token: env().UPLOADTHING_TOKEN, callbackUrl, logLevel: 'Warning' },
   });
   return handlers;
 }

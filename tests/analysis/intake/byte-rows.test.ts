@@ -190,4 +190,17 @@ describe('rows from bytes', () => {
       code: 'no-rows',
     });
   });
+
+  test('a file in which no position is whole is none, however many rows it has', () => {
+    for (const rows of ['1,0,a,b\n1,1,a,b', '1,0,a,2\n1,1,3,b', '1,0,"a",2\n1,1,3,']) {
+      expect(readTrajectories(bytesOf(`track,t,x,y\n${rows}\n`), specOf())).toMatchObject({
+        failed: true,
+        code: 'no-rows',
+        line: 2,
+      });
+    }
+    expect(readTrajectories(bytesOf('track,t,x,y\n1,0,a,2\n1,1,3,4\n'), specOf())).toMatchObject({
+      summary: { rows: 2, tracks: 1, badRows: 1 },
+    });
+  });
 });

@@ -2,8 +2,8 @@ import { z } from 'zod';
 import { route } from '@/app/_server/route';
 import { analysisWorker } from '@/app/_server/services/analysis-worker';
 import { readStoredFile } from '@/app/_server/services/files';
+import { readingFault } from '@/app/_server/services/reading-fault';
 import { db } from '@/db/client';
-import { AppError } from '@/db/errors';
 import { toSafeCsv } from '@/db/files/csv';
 import { attachmentDisposition } from '@/db/files/safe-name';
 import { readingRequest } from '@/db/inputs/intake';
@@ -20,7 +20,7 @@ export const POST = route(
       bytes: await readStoredFile(file),
       spec: body.spec,
     });
-    if (read.failed) throw new AppError('unreadable', { sentence: read.message });
+    if (read.failed) throw readingFault(read);
     const rows = read.problems.map((problem) => [problem.line, problem.reason, problem.text]);
     return new Response(toSafeCsv(['line', 'reason', 'text'], rows), {
       headers: {

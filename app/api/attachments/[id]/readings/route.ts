@@ -2,9 +2,9 @@ import { z } from 'zod';
 import { route } from '@/app/_server/route';
 import { analysisWorker } from '@/app/_server/services/analysis-worker';
 import { readStoredFile } from '@/app/_server/services/files';
+import { readingFault } from '@/app/_server/services/reading-fault';
 import { db } from '@/db/client';
 import { makeReading } from '@/db/commands/file/make-reading';
-import { AppError } from '@/db/errors';
 import { readingRequest } from '@/db/inputs/intake';
 import { getAttachmentFor } from '@/db/queries/file/get-attachment-for';
 
@@ -19,7 +19,7 @@ export const POST = route(
       bytes: await readStoredFile(file),
       spec: body.spec,
     });
-    if (read.failed) throw new AppError('unreadable', { sentence: read.message });
+    if (read.failed) throw readingFault(read);
     return makeReading(db(), actor, {
       attachmentId: file.id,
       spec: body.spec,
