@@ -1,7 +1,7 @@
 /** @type {import('next').NextConfig} */
 const config = {
   // Native or single-copy packages stay outside the server bundle: a second copy of yjs would not know the first one's types.
-  serverExternalPackages: ['@node-rs/argon2', 'pg', 'yjs', 'canonicalize', 'smtp-server'],
+  serverExternalPackages: ['@node-rs/argon2', 'pg', 'yjs', 'canonicalize'],
   poweredByHeader: false,
   productionBrowserSourceMaps: false,
   // The development badge would lie on the menu at the foot of the spine.

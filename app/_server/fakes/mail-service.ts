@@ -1,22 +1,13 @@
 import { randomUUID } from 'node:crypto';
 import { mkdirSync } from 'node:fs';
-import { readdir, readFile, rename, rm, writeFile } from 'node:fs/promises';
+import { rename, rm, writeFile } from 'node:fs/promises';
 import path from 'node:path';
 import PostalMime from 'postal-mime';
 import { SMTPServer } from 'smtp-server';
+import { listKeptFiles, type KeptMail } from './mail-store';
 
 const MOST_KEPT = 200;
 const MOST_BYTES = 1024 * 1024;
-
-export interface KeptMail {
-  readonly id: string;
-  /** When it came, ISO 8601. */
-  readonly at: string;
-  readonly to: readonly string[];
-  readonly from: string;
-  readonly subject: string;
-  readonly text: string;
-}
 
 /**
  * The demo's mail server: takes everything, sends nothing on, keeps the newest in a folder, one JSON file a mail.
@@ -63,22 +54,6 @@ async function keep(folder: string, raw: Buffer, to: readonly { address: string 
   // Whole or not at all: a reader may look at any moment.
   await writeFile(`${file}.part`, JSON.stringify(kept), { mode: 0o600 });
   await rename(`${file}.part`, file);
-  for (const old of (await files(folder)).slice(MOST_KEPT)) await rm(path.join(folder, old), { force: true });
-}
-
-/** Newest first; the names begin with the time. */
-async function files(folder: string): Promise<string[]> {
-  const names = await readdir(folder).catch(() => []);
-  return names
-    .filter((name) => name.endsWith('.json'))
-    .sort()
-    .reverse();
-}
-
-/** What the local mail server has kept, newest first. */
-export async function readKeptMail(folder: string): Promise<KeptMail[]> {
-  const texts = await Promise.all(
-    (await files(folder)).map((name) => readFile(path.join(folder, name), 'utf8').catch(() => null)),
-  );
-  return texts.flatMap((text) => (text === null ? [] : [JSON.parse(text) as KeptMail]));
+  for (const old of (await listKeptFiles(folder)).slice(MOST_KEPT))
+    await rm(path.join(folder, old), { force: true });
 }
