@@ -1,6 +1,7 @@
 'use client';
 
 import { signOut } from 'next-auth/react';
+import { useRouter } from 'next/navigation';
 import { useState } from 'react';
 import { Menu, MenuChoice, MenuItem, MenuNote, MenuRule } from '@/components/ui/menu';
 import { applyTheme, type ThemeChoice } from './theme';
@@ -22,6 +23,7 @@ export function PersonMenu({
   role: string;
   theme: ThemeChoice;
 }) {
+  const router = useRouter();
   const [theme, setTheme] = useState(stored);
   const [fault, setFault] = useState('');
   const initials = name
@@ -66,6 +68,8 @@ export function PersonMenu({
           <span className="small block font-semibold text-ink">{name}</span>
           {role}
         </MenuNote>
+        <MenuRule />
+        <MenuItem onSelect={() => router.push('/profile')}>Your profile</MenuItem>
         <MenuRule />
         <MenuChoice
           label="Appearance"

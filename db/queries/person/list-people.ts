@@ -38,9 +38,8 @@ export const personLine = {
     WHERE ${notebookMember.personId} = ${person.id} AND ${notebookMember.role} = 'owner')`,
 };
 
-/** Everybody with an account, open ones first, by name. @throws AppError forbidden - neither PI nor administrator. */
+/** Everybody with an account, open ones first, by name. @throws AppError not-found - neither PI nor administrator. */
 export async function listPeople(db: Connection, actor: Actor): Promise<PersonLine[]> {
-  if (!may(actor, 'people.read', null))
-    throw new AppError('forbidden', { sentence: 'The list of people is for PIs and administrators.' });
+  if (!may(actor, 'people.read', null)) throw new AppError('not-found');
   return db.select(personLine).from(person).orderBy(desc(person.active), asc(person.name), asc(person.login));
 }
