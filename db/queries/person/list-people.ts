@@ -2,7 +2,7 @@ import { asc, desc, sql } from 'drizzle-orm';
 import type { Connection } from '../../client';
 import { AppError } from '../../errors';
 import { may, type Actor, type PersonRole } from '../../policies/may';
-import { login, notebookMember, person } from '../../schema/index';
+import { login, person } from '../../schema/index';
 
 export interface PersonLine {
   readonly id: string;
@@ -30,12 +30,13 @@ export const personLine = {
   active: person.active,
   invited: sql<boolean>`${person.passwordHash} IS NULL`,
   createdAt: person.createdAt,
+  // Written out: where one table is asked, drizzle leaves its name away, and "id" would be the inner table's.
   lastSeenAt:
-    sql<Date | null>`(SELECT max(${login.seenAt}) FROM ${login} WHERE ${login.personId} = ${person.id})`.mapWith(
+    sql<Date | null>`(SELECT max(l.seen_at) FROM login l WHERE l.person_id = "person"."id")`.mapWith(
       login.seenAt,
     ),
-  notebooksOwned: sql<number>`(SELECT count(*)::int FROM ${notebookMember}
-    WHERE ${notebookMember.personId} = ${person.id} AND ${notebookMember.role} = 'owner')`,
+  notebooksOwned: sql<number>`(SELECT count(*)::int FROM notebook_member m
+    WHERE m.person_id = "person"."id" AND m.role = 'owner')`,
 };
 
 /** Everybody with an account, open ones first, by name. @throws AppError not-found - neither PI nor administrator. */
