@@ -22,6 +22,7 @@ const settingsShape = z.object({
   MOTEBOOK_WS_PORT: port(4311),
   MOTEBOOK_FILES_PORT: port(4312),
   MOTEBOOK_DB_PORT: port(4313),
+  MOTEBOOK_SMTP_PORT: port(4314),
   MOTEBOOK_DATA: z.string().min(1).optional(),
   MOTEBOOK_DEMO: z.enum(['yes', 'no'], { error: 'must be yes or no' }).default('yes'),
 });
@@ -52,6 +53,8 @@ const webShape = z.object({
   /** Origin of the file service: where browsers send uploads. */
   MOTEBOOK_FILES_ORIGIN: url,
   MOTEBOOK_DATABASE_APP: database,
+  /** Where the demo's mail server keeps what it gets; the page /mail shows it. Not set in production. */
+  MOTEBOOK_MAIL_FOLDER: z.string().min(1).optional(),
   ...publicUrl,
   ...fileStore,
 });
@@ -62,11 +65,26 @@ const wsShape = z.object({
   ...publicUrl,
 });
 const projectorShape = z.object({ MOTEBOOK_MODE: mode, MOTEBOOK_DATABASE_APP: database, ...fileStore });
+const mailShape = z.object({
+  MOTEBOOK_MODE: mode,
+  MOTEBOOK_DATABASE_APP: database,
+  NEXTAUTH_URL: url,
+  /** The mail server, with its password if it wants one. */
+  MOTEBOOK_SMTP_URL: z
+    .string({ error: 'is missing' })
+    .regex(/^smtps?:\/\/./, 'must start with smtp:// or smtps://')
+    .refine(URL.canParse, 'must be an address (URL)'),
+  /** Sender of all mail. */
+  MOTEBOOK_MAIL_FROM: z
+    .string({ error: 'is missing' })
+    .regex(/^[^\r\n]*[^\s@<]+@[^\s@>]+>?$/, 'must be an address, such as Motebook <motebook@lab.example>'),
+});
 
 export type Settings = z.infer<typeof settingsShape>;
 export type WebEnv = z.infer<typeof webShape>;
 export type WsEnv = z.infer<typeof wsShape>;
 export type ProjectorEnv = z.infer<typeof projectorShape>;
+export type MailEnv = z.infer<typeof mailShape>;
 
 /** True for the names under which a machine reaches only itself. */
 export function isLoopback(hostname: string): boolean {
@@ -125,3 +143,10 @@ export const wsEnv = once((): WsEnv => {
 
 /** Environment of the projector. @throws Error listing every fault. */
 export const projectorEnv = once((): ProjectorEnv => check(projectorShape, process.env));
+
+/** Environment of the mail process. @throws Error listing every fault. */
+export const mailEnv = once((): MailEnv => {
+  const values = check(mailShape, process.env);
+  checkPublicUrl(values.MOTEBOOK_MODE, values.NEXTAUTH_URL);
+  return values;
+});

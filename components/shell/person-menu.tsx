@@ -69,6 +69,8 @@ export function PersonMenu({
           {role}
         </MenuNote>
         <MenuRule />
+        <MenuItem onSelect={() => router.push('/profile')}>Your profile</MenuItem>
+        <MenuRule />
         <MenuChoice
           label="Appearance"
           value={theme}

@@ -60,3 +60,14 @@ export function SearchIcon() {
     </Drawing>
   );
 }
+
+/** Two people beside each other. */
+export function PeopleIcon() {
+  return (
+    <Drawing>
+      <circle cx="7" cy="6.5" r="2.6" />
+      <path d="M2.5 16.5c0-3 2-5 4.5-5s4.5 2 4.5 5" />
+      <path d="M12.5 4.2a2.4 2.4 0 0 1 0 4.6M14 11.8c2 .5 3.3 2.3 3.5 4.7" opacity="0.6" />
+    </Drawing>
+  );
+}

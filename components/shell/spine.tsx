@@ -7,7 +7,7 @@ import { GoTo } from '@/components/search/go-to';
 import { classes } from '@/components/ui/classes';
 import { Tooltip } from '@/components/ui/tooltip';
 import { ProductMark } from '@/components/ui/walk-mark';
-import { MeasurementsIcon, NotebooksIcon, SearchIcon, TodayIcon } from './place-icons';
+import { MeasurementsIcon, NotebooksIcon, PeopleIcon, SearchIcon, TodayIcon } from './place-icons';
 
 interface Place {
   readonly href: string;
@@ -34,11 +34,18 @@ const places: readonly Place[] = [
   { href: '/search', word: 'Search', icon: <SearchIcon />, holds: (path) => path.startsWith('/search') },
 ];
 
+const people: Place = {
+  href: '/people',
+  word: 'People',
+  icon: <PeopleIcon />,
+  holds: (path) => path.startsWith('/people'),
+};
+
 /**
  * The places of the product: words at the left on a wide screen, drawings with their words on hover on a tablet, a bar at
- * the bottom on a phone. `person` is the menu of whoever is signed in.
+ * the bottom on a phone. `person` is the menu of whoever is signed in; `keepsHouse` tells whether the place of the people is theirs too.
  */
-export function Spine({ person }: { person: ReactNode }) {
+export function Spine({ person, keepsHouse }: { person: ReactNode; keepsHouse: boolean }) {
   const path = usePathname();
   return (
     <header
@@ -58,7 +65,7 @@ export function Spine({ person }: { person: ReactNode }) {
       </Link>
       <nav aria-label="Places" className="grow tab:grow-0 desk:mt-4">
         <ul className="flex h-full tab:flex-col">
-          {places.map((place) => (
+          {(keepsHouse ? [...places, people] : places).map((place) => (
             <li key={place.href} className="grow tab:grow-0">
               <PlaceLink place={place} current={place.holds(path)} />
             </li>

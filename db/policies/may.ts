@@ -28,6 +28,20 @@ export interface InEntry extends InNotebook {
   readonly state: EntryState;
 }
 
+export interface NewPerson {
+  readonly role: PersonRole;
+  readonly admin: boolean;
+  /** The inviter's place in the notebook that the new person joins; null: none is named. */
+  readonly notebook: MemberRole | null;
+}
+
+export interface OtherPerson {
+  /** Has never set a password. */
+  readonly invited: boolean;
+  /** Belongs to a notebook that the actor owns. */
+  readonly inOwnNotebook: boolean;
+}
+
 /** Every action with what must be known about its thing. */
 export interface ActionThings {
   'notebook.read': InNotebook;
@@ -41,6 +55,12 @@ export interface ActionThings {
   'reading.create': InEntry;
   'measurements.read': null;
   'search.read': null;
+  'people.read': null;
+  'person.invite': NewPerson;
+  /** A mail with a link: the invitation again, or a new password. Nobody ever sets or sees another's password. */
+  'person.send-link': OtherPerson;
+  /** Role and admin flag, closing and opening an account, handing its notebooks over, ending its logins. */
+  'person.manage': null;
 }
 
 export type Action = keyof ActionThings;
@@ -61,6 +81,14 @@ const rules: { [A in Action]: (actor: Actor, thing: ActionThings[A]) => boolean 
   'reading.create': (actor, thing) => isWriter(actor, thing) && isOpenDraft(thing) && !thing.archived,
   'measurements.read': () => true,
   'search.read': () => true,
+  'people.read': (actor) => actor.admin || actor.role === 'pi',
+  'person.invite': (actor, thing) =>
+    actor.admin
+      ? thing.notebook === null || thing.notebook === 'owner'
+      : actor.role === 'pi' && thing.notebook === 'owner' && thing.role !== 'pi' && !thing.admin,
+  'person.send-link': (actor, thing) =>
+    actor.admin || (actor.role === 'pi' && thing.invited && thing.inOwnNotebook),
+  'person.manage': (actor) => actor.admin,
 };
 
 /** Whether `actor` may do `action` to `thing`. Nobody who is deactivated, or unknown, may do anything. */

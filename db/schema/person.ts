@@ -18,8 +18,8 @@ export const person = pgTable(
     role: personRole('role').notNull(),
     admin: boolean('admin').notNull().default(false),
     active: boolean('active').notNull().default(true),
-    /** argon2id, PHC string. */
-    passwordHash: text('password_hash').notNull(),
+    /** argon2id, PHC string; null from the invitation until its link was used: nobody can sign in then. */
+    passwordHash: text('password_hash'),
     createdAt: momentByDatabase('created_at'),
   },
   // Sign-in takes either; a login name that looked like an address could meet somebody else's.

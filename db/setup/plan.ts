@@ -13,7 +13,7 @@ export function addresses(settings: Settings) {
 }
 
 /** Next reads .env by itself; what is set, even to nothing, it leaves alone. The web process needs none of these. */
-const WITHHELD = { MOTEBOOK_DATABASE_OWNER: '', MOTEBOOK_DATABASE_WS: '' };
+const WITHHELD = { MOTEBOOK_DATABASE_OWNER: '', MOTEBOOK_DATABASE_WS: '', MOTEBOOK_SMTP_URL: '' };
 
 /** The processes of a demo installation, each with the environment that it needs and no more. */
 export function demoPlan(settings: Settings, cluster: Cluster, folder: string, dev: boolean): ChildPlan[] {
@@ -39,6 +39,7 @@ export function demoPlan(settings: Settings, cluster: Cluster, folder: string, d
   const common = { MOTEBOOK_MODE: 'demo', NEXT_TELEMETRY_DISABLED: '1', TZ: 'UTC' };
   const signIn = { NEXTAUTH_URL: at.product, NEXTAUTH_SECRET: secrets.signIn };
   const cache = { MOTEBOOK_CACHE: path.join(folder, 'cache') };
+  const mailFolder = { MOTEBOOK_MAIL_FOLDER: path.join(folder, 'mail') };
   return [
     {
       name: 'files',
@@ -48,6 +49,26 @@ export function demoPlan(settings: Settings, cluster: Cluster, folder: string, d
         ...fileService,
         MOTEBOOK_FILES_PORT: String(settings.MOTEBOOK_FILES_PORT),
         MOTEBOOK_FILES_FOLDER: path.join(folder, 'files'),
+      },
+    },
+    {
+      name: 'smtp',
+      args: ['--import', 'tsx', 'app/_server/fakes/mail-service-main.ts'],
+      environment: {
+        ...common,
+        ...mailFolder,
+        MOTEBOOK_SMTP_PORT: String(settings.MOTEBOOK_SMTP_PORT),
+      },
+    },
+    {
+      name: 'mail',
+      args: ['--import', 'tsx', 'ws-server/mail/main.ts'],
+      environment: {
+        ...common,
+        NEXTAUTH_URL: at.product,
+        MOTEBOOK_DATABASE_APP: cluster.url('motebook_app'),
+        MOTEBOOK_SMTP_URL: `smtp://127.0.0.1:${settings.MOTEBOOK_SMTP_PORT}`,
+        MOTEBOOK_MAIL_FROM: 'Motebook <motebook@tarnfield.example>',
       },
     },
     {
@@ -85,6 +106,7 @@ export function demoPlan(settings: Settings, cluster: Cluster, folder: string, d
         ...signIn,
         ...fileService,
         ...cache,
+        ...mailFolder,
         ...WITHHELD,
         NODE_ENV: dev ? 'development' : 'production',
         MOTEBOOK_WS_URL: at.ws,
@@ -103,14 +125,25 @@ export function productionPlan(settings: Settings): ChildPlan[] {
     ),
   );
   const { MOTEBOOK_DATABASE_OWNER: _owner, ...shared } = given;
-  const { MOTEBOOK_DATABASE_WS: _ws, ...withoutWs } = shared;
+  const { MOTEBOOK_DATABASE_WS: _ws, MOTEBOOK_SMTP_URL: smtp, ...withoutWs } = shared;
   const forWs = Object.fromEntries(
     Object.entries(shared).filter(
-      ([name]) => name !== 'MOTEBOOK_DATABASE_APP' && !name.startsWith('UPLOADTHING_'),
+      ([name]) =>
+        !['MOTEBOOK_DATABASE_APP', 'MOTEBOOK_SMTP_URL'].includes(name) && !name.startsWith('UPLOADTHING_'),
     ),
   );
   const production = { NODE_ENV: 'production', NEXT_TELEMETRY_DISABLED: '1' };
+  const forMail = Object.fromEntries(
+    Object.entries(withoutWs).filter(
+      ([name]) => name !== 'NEXTAUTH_SECRET' && !name.startsWith('UPLOADTHING_'),
+    ),
+  );
   return [
+    {
+      name: 'mail',
+      args: ['--import', 'tsx', 'ws-server/mail/main.ts'],
+      environment: { ...forMail, ...(smtp ? { MOTEBOOK_SMTP_URL: smtp } : {}), ...production },
+    },
     {
       name: 'projector',
       args: ['--import', 'tsx', 'ws-server/projector/main.ts'],

@@ -30,9 +30,11 @@ export async function startDemo({ project, folder, settings, dev, say }: StartOp
     MOTEBOOK_WS_PORT: settings.MOTEBOOK_WS_PORT,
     MOTEBOOK_FILES_PORT: settings.MOTEBOOK_FILES_PORT,
     MOTEBOOK_DB_PORT: settings.MOTEBOOK_DB_PORT,
+    MOTEBOOK_SMTP_PORT: settings.MOTEBOOK_SMTP_PORT,
   });
   makeDataFolder(folder);
-  for (const name of ['files', 'cache']) mkdirSync(path.join(folder, name), { recursive: true, mode: 0o700 });
+  for (const name of ['files', 'cache', 'mail'])
+    mkdirSync(path.join(folder, name), { recursive: true, mode: 0o700 });
   const at = addresses(settings);
   await new Supervisor(project, folder, at.product, say).run(async (supervisor) => {
     const { signal } = supervisor;
@@ -45,6 +47,7 @@ export async function startDemo({ project, folder, settings, dev, say }: StartOp
     if (!dev) await ensureBuild(project, say, signal);
     supervisor.startChildren(demoPlan(settings, cluster, folder, dev));
     await waitForListener(settings.MOTEBOOK_FILES_PORT, 'The file service', 60, signal);
+    await waitForListener(settings.MOTEBOOK_SMTP_PORT, 'The local mail server', 60, signal);
     await waitForListener(settings.MOTEBOOK_WS_PORT, 'The websocket server', 60, signal);
     await waitForAnswer(`${at.product}/sign-in`, 120, signal);
     const population = await ensureDemo(folder, settings.MOTEBOOK_DEMO === 'yes', {

@@ -1,4 +1,4 @@
-import { env, projectorEnv, wsEnv } from '../env';
+import { env, mailEnv, projectorEnv, wsEnv } from '../env';
 import { ensureBuild } from './build';
 import { checkServer } from './check-server';
 import { makeDataFolder } from './data-folder';
@@ -38,7 +38,7 @@ export async function startProduction({ project, folder, settings, say }: StartO
 /** @throws Error that lists every fault of every process's environment, each once. */
 export function refuseIncompleteEnvironment(): void {
   const lines = new Set<string>();
-  for (const check of [env, wsEnv, projectorEnv]) {
+  for (const check of [env, wsEnv, projectorEnv, mailEnv]) {
     try {
       check();
     } catch (error) {

@@ -11,6 +11,7 @@ describe('what a person may set', () => {
       MOTEBOOK_WS_PORT: 4311,
       MOTEBOOK_FILES_PORT: 4312,
       MOTEBOOK_DB_PORT: 4313,
+      MOTEBOOK_SMTP_PORT: 4314,
       MOTEBOOK_DEMO: 'yes',
     });
   });

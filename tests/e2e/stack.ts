@@ -33,7 +33,7 @@ export async function freePorts(count: number): Promise<number[]> {
 
 /** A data folder and ports for one stack; handed to `startStack` more than once to stop and start again. */
 export async function newPlace(options: { demo: boolean }): Promise<Record<string, string>> {
-  const [web, ws, files, database] = await freePorts(4);
+  const [web, ws, files, database, smtp] = await freePorts(5);
   const folder = await mkdtemp(path.join(tmpdir(), 'motebook-e2e-'));
   return {
     MOTEBOOK_DATA: folder,
@@ -41,6 +41,7 @@ export async function newPlace(options: { demo: boolean }): Promise<Record<strin
     MOTEBOOK_WS_PORT: String(ws),
     MOTEBOOK_FILES_PORT: String(files),
     MOTEBOOK_DB_PORT: String(database),
+    MOTEBOOK_SMTP_PORT: String(smtp),
     MOTEBOOK_DEMO: options.demo ? 'yes' : 'no',
   };
 }

@@ -41,7 +41,7 @@ async function refusedStart(given: Record<string, string>): Promise<string> {
 test('start, Ctrl-C and a second start: nothing is left running between them, and the data stay', async () => {
   stack = await startStack(place);
   const first = findRunNote(folder())!;
-  expect(Object.keys(first.children).sort()).toEqual(['files', 'projector', 'web', 'ws']);
+  expect(Object.keys(first.children).sort()).toEqual(['files', 'mail', 'projector', 'smtp', 'web', 'ws']);
   for (const pid of pidsOf(first)) expect([pid, isOurs(pid, PROJECT)]).toEqual([pid, true]);
   const database = Number(readFileSync(path.join(folder(), 'pg', 'postmaster.pid'), 'utf8').split('\n')[0]);
   expect(existsSync(`/proc/${database}`)).toBe(true);

@@ -14,6 +14,13 @@ export function hashPassword(password: string): Promise<string> {
 // Verified against when the name is unknown, so that unknown names take as long as wrong passwords.
 let nobodysHash: Promise<string> | null = null;
 
+/** Whether a password fits a stored hash. Without a hash (nobody, or only invited) none fits, after the same time. */
+export async function isPassword(stored: string | null, password: string): Promise<boolean> {
+  nobodysHash ??= hashPassword('nobody has this password');
+  const right = await verify(stored ?? (await nobodysHash), password);
+  return right && stored !== null;
+}
+
 /**
  * Checks name and password and starts a login.
  * @param name - login name or e-mail, any case.
@@ -28,8 +35,7 @@ export async function startLogin(
     .select({ id: person.id, passwordHash: person.passwordHash, active: person.active })
     .from(person)
     .where(or(eq(person.login, name), eq(person.email, name)));
-  nobodysHash ??= hashPassword('nobody has this password');
-  const right = await verify(found?.passwordHash ?? (await nobodysHash), input.password);
+  const right = await isPassword(found?.passwordHash ?? null, input.password);
   return db.transaction(async (tx) => {
     if (!found || !right || !found.active) {
       await tx

@@ -4,6 +4,7 @@ import { AppError } from '../../errors';
 import type { AddPersonInput, GroupInput } from '../../inputs/person';
 import { audit, lab, person } from '../../schema/index';
 import { hashPassword } from '../login/start-login';
+import { whatIsTaken } from './what-is-taken';
 
 /**
  * Makes an account from the server's command line: whoever may read the database's password needs no account to do so,
@@ -41,16 +42,4 @@ export async function addPerson(
     });
     return { personId: made.id };
   });
-}
-
-function whatIsTaken(
-  taken: readonly { login: string }[],
-  given: { login: string; email: string },
-): Record<string, string> {
-  const login = taken.some((one) => one.login === given.login);
-  return login
-    ? {
-        login: `Somebody has the login name ${given.login}; it is never given to anybody else. Choose another.`,
-      }
-    : { email: `Somebody has the address ${given.email}. One person has one account.` };
 }

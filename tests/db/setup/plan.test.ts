@@ -22,7 +22,7 @@ test('in a demo each process is given what it needs and no more', () => {
   const plans = demoPlan(settings, cluster, '/data', false);
   expect(whoKnows(plans, 'motebook_owner')).toEqual([]);
   expect(whoKnows(plans, 'motebook_ws')).toEqual(['ws']);
-  expect(whoKnows(plans, 'motebook_app')).toEqual(['projector', 'web']);
+  expect(whoKnows(plans, 'motebook_app')).toEqual(['mail', 'projector', 'web']);
   expect(whoKnows(plans, 'sign-in-secret')).toEqual(['ws', 'web']);
   const token = Buffer.from(JSON.stringify({ apiKey: 'sk_local_key' }))
     .toString('base64')
@@ -46,6 +46,7 @@ test('in production each process is given its part of the environment', () => {
     MOTEBOOK_DATABASE_WS: 'postgres://ws-secret',
     NEXTAUTH_SECRET: 'sign-in-secret',
     UPLOADTHING_TOKEN: 'file-secret',
+    MOTEBOOK_SMTP_URL: 'smtp://mail-secret',
     SOMETHING_ELSE: 'machine-secret',
   };
   for (const [name, value] of Object.entries(given)) vi.stubEnv(name, value);
@@ -53,7 +54,9 @@ test('in production each process is given its part of the environment', () => {
   expect(whoKnows(plans, 'owner-secret')).toEqual([]);
   expect(whoKnows(plans, 'machine-secret')).toEqual([]);
   expect(whoKnows(plans, 'ws-secret')).toEqual(['ws']);
-  expect(whoKnows(plans, 'app-secret')).toEqual(['projector', 'web']);
+  expect(whoKnows(plans, 'app-secret')).toEqual(['mail', 'projector', 'web']);
+  expect(whoKnows(plans, 'mail-secret')).toEqual(['mail']);
+  expect(whoKnows(plans, 'sign-in-secret')).not.toContain('mail');
   expect(whoKnows(plans, 'file-secret')).toEqual(['projector', 'web']);
   expect(plans.map((plan) => plan.name)).not.toContain('files');
 });

@@ -1,5 +1,6 @@
 'use client';
 
+import Link from 'next/link';
 import { signIn } from 'next-auth/react';
 import { useRef, useState, type FormEvent } from 'react';
 import { Button } from '@/components/ui/button';
@@ -76,6 +77,11 @@ export function SignInForm({ returnPath, demo }: { returnPath: string; demo: Dem
         <Button ref={button} type="submit" weight="primary" busy={busy} className="w-full">
           {busy ? 'Signing in …' : 'Sign in'}
         </Button>
+        <p className="label">
+          <Link href="/forgotten" className="text-muted underline underline-offset-4 hover:text-ink">
+            Forgotten your password?
+          </Link>
+        </p>
       </form>
       {demo ? (
         <DemoAccounts
@@ -97,7 +103,8 @@ async function trySignIn(name: string, password: string): Promise<Faults | null>
   try {
     const answer = await signIn('credentials', { redirect: false, name, password });
     if (answer?.ok && !answer.error) return null;
-    if (answer?.status === ERRORS['slow-down'].status) return { form: ERRORS['slow-down'].sentence };
+    if (answer?.status === ERRORS['slow-down'].status)
+      return { form: answer.error ?? ERRORS['slow-down'].sentence };
     if (answer?.status === ERRORS['sign-in-failed'].status)
       return { password: ERRORS['sign-in-failed'].sentence };
     return { form: `${ERRORS['storage-down'].sentence} What you typed is still here.` };
