@@ -14,7 +14,7 @@ vi.mock('next/headers', () => ({
   headers: async () => new Headers({ 'x-forwarded-for': request.forwarded }),
 }));
 vi.mock('next-auth', async (original) => ({
-  ...(await original<typeof import('next-auth')>()),
+  ...(await original<object>()),
   getServerSession: async () => session,
 }));
 
