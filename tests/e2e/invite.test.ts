@@ -119,6 +119,8 @@ test('after five wrong passwords the sign-in page says how long to wait; a reset
   await page.getByText(/Too many attempts\. Wait (10|9) minutes and try again\./).waitFor();
 
   await page.getByRole('link', { name: 'Forgotten your password?' }).click();
+  // Both pages have a field of this name.
+  await page.getByRole('heading', { name: 'Forgotten your password?' }).waitFor();
   await page.getByLabel('Login name or e-mail').fill('keita');
   await page.getByRole('button', { name: 'Send me a link' }).click();
   await page.getByText('If somebody here has this name').waitFor();
