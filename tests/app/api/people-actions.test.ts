@@ -154,10 +154,10 @@ describe('what people do before they are signed in', () => {
 });
 
 describe('the route that signs in', () => {
-  const { countSignIn } = { countSignIn: () => import('../../../app/_server/count-sign-in') };
+  const load = () => import('../../../app/_server/count-sign-in');
   /** Stands where next-auth's handler does: right for one password, as that answers. */
   async function post(name: string, right: boolean, options: { json?: boolean; from?: string } = {}) {
-    const wrapped = (await countSignIn()).countSignIn(async (given) => {
+    const wrapped = (await load()).countSignIn(async (given) => {
       const body = await given.text();
       expect(body).toContain(name);
       return right
@@ -204,7 +204,7 @@ describe('the route that signs in', () => {
 
   test('other requests to next-auth are not counted', async () => {
     const { rows: before } = await database.app.execute(sql`SELECT sum(count) AS n FROM attempt`);
-    const wrapped = (await countSignIn()).countSignIn(async () => new Response('{}'));
+    const wrapped = (await load()).countSignIn(async () => new Response('{}'));
     for (const path of ['csrf', 'session', 'signout'])
       await wrapped(new Request(`${URL_HERE}/api/auth/${path}`, { method: 'POST' }), {});
     await wrapped(new Request(`${URL_HERE}/api/auth/callback/credentials`), {});
