@@ -43,7 +43,7 @@ export async function fetchFromService(storageKey: string, access: FileAccess): 
  */
 export async function openStoredFile(file: StoredFileRef, access: FileAccess): Promise<Buffer> {
   const copy = path.join(access.cacheFolder, file.sha256.slice(0, 2), file.sha256);
-  const kept = await readFile(copy).catch(() => null);
+  const kept = await readFile(/* turbopackIgnore: true */ copy).catch(() => null);
   if (kept && sha256(kept) === file.sha256) return kept;
   const bytes = await fetchFromService(file.storageKey, access);
   if (sha256(bytes) !== file.sha256) {
