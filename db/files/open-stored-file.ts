@@ -3,6 +3,7 @@ import { mkdir, open, readFile, rename, unlink } from 'node:fs/promises';
 import path from 'node:path';
 import { UTApi } from 'uploadthing/server';
 import { AppError } from '../errors';
+import { MAX_UPLOAD_BYTES } from './policy';
 
 /** Where a file's bytes are and what they must be. */
 export interface StoredFileRef {
@@ -19,21 +20,38 @@ export interface FileAccess {
 
 const FETCH_MS = 60_000;
 
-/** Fetches the bytes of a key from the file service, by a signed address of a few minutes. */
+/**
+ * Fetches the bytes of a key from the file service, by a signed address of a few minutes.
+ * @throws AppError storage-down - the service is away, or does not have it.   @throws AppError too-big - more than may be
+ * uploaded comes, whatever was announced.
+ */
 export async function fetchFromService(storageKey: string, access: FileAccess): Promise<Buffer> {
   const api = new UTApi({ token: access.token });
   try {
     const { ufsUrl } = await api.generateSignedURL(storageKey, { expiresIn: '5 minutes' });
     const response = await fetch(ufsUrl, { signal: AbortSignal.timeout(FETCH_MS) });
     if (!response.ok) throw new Error(`the file service answered ${response.status}`);
-    return Buffer.from(await response.arrayBuffer());
+    return await readAll(response, MAX_UPLOAD_BYTES);
   } catch (cause) {
+    if (cause instanceof AppError) throw cause;
     throw new AppError('storage-down', {
       message: `file ${storageKey}: ${(cause as Error).message}`,
       sentence: 'The file service cannot be reached at the moment. The file is safe there; try again.',
       cause,
     });
   }
+}
+
+/** Counts while it reads: a length that is only announced must not decide how much memory is taken. */
+async function readAll(response: Response, most: number): Promise<Buffer> {
+  const pieces: Uint8Array[] = [];
+  let size = 0;
+  for await (const piece of response.body ?? []) {
+    size += piece.length;
+    if (size > most) throw new AppError('too-big');
+    pieces.push(piece);
+  }
+  return Buffer.concat(pieces);
 }
 
 /**
@@ -43,7 +61,7 @@ export async function fetchFromService(storageKey: string, access: FileAccess): 
  */
 export async function openStoredFile(file: StoredFileRef, access: FileAccess): Promise<Buffer> {
   const copy = path.join(access.cacheFolder, file.sha256.slice(0, 2), file.sha256);
-  const kept = await readFile(copy).catch(() => null);
+  const kept = await readFile(/* turbopackIgnore: true */ copy).catch(() => null);
   if (kept && sha256(kept) === file.sha256) return kept;
   const bytes = await fetchFromService(file.storageKey, access);
   if (sha256(bytes) !== file.sha256) {

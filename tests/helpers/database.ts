@@ -1,4 +1,5 @@
 import { randomBytes } from 'node:crypto';
+import { sql } from 'drizzle-orm';
 import pg from 'pg';
 import { inject } from 'vitest';
 import { connect, type Database } from '../../db/client';
@@ -33,6 +34,11 @@ export async function createTestDatabase(): Promise<TestDatabase> {
       await asOwner((client) => dropDatabase(client, name));
     },
   };
+}
+
+/** Opens connections of a pool beforehand, so that what follows at the same moment really begins at the same moment. */
+export async function warmUp(db: Database, connections: number): Promise<void> {
+  await Promise.all(Array.from({ length: connections }, () => db.execute(sql`SELECT pg_sleep(0.1)`)));
 }
 
 /**

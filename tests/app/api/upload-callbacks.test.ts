@@ -147,6 +147,14 @@ describe('a completion (rules U6, S45)', () => {
     expect(await byKey(key)).toHaveLength(1);
   });
 
+  test('of a file over the limit makes none, whatever size it says (S38)', async () => {
+    const key = await world.fake.store(Buffer.alloc(MAX_UPLOAD_BYTES + 1));
+    const body = completion(await ticketOf(world.people.editor!), key, { size: 3 });
+    await callBack(body, hmac(body));
+    expect(await byKey(key)).toEqual([]);
+    expect(said.join('\n')).toContain('too-big');
+  });
+
   test('by whom the right was taken meanwhile makes none, and the browser is told why', async () => {
     world.as('editor');
     const bytes = randomBytes(100);

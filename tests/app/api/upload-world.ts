@@ -140,10 +140,11 @@ export class UploadWorld {
     return { status: response.status, body };
   }
 
-  async send(url: string, bytes: Uint8Array) {
+  /** Sends bytes to the place that was given, from some byte on. */
+  async send(url: string, bytes: Uint8Array, from = 0) {
     const form = new FormData();
-    form.append('file', new Blob([bytes as BlobPart]), 'file');
-    const response = await fetch(url, { method: 'PUT', body: form });
+    form.append('file', new Blob([bytes.slice(from) as BlobPart]), 'file');
+    const response = await fetch(url, { method: 'PUT', body: form, headers: { Range: `bytes=${from}-` } });
     const body = (await response.json()) as { serverData?: Uploaded; error?: string };
     return { status: response.status, ...body };
   }

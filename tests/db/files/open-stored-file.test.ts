@@ -5,6 +5,7 @@ import path from 'node:path';
 import { afterAll, beforeAll, beforeEach, expect, test, vi } from 'vitest';
 import { AppError } from '../../../db/errors';
 import { fetchFromService, openStoredFile, type FileAccess } from '../../../db/files/open-stored-file';
+import { MAX_UPLOAD_BYTES } from '../../../db/files/policy';
 import { RunningFake } from '../../app/fakes/running-fake';
 
 /** Copies of stored files, kept and verified; the real SDK against the local file service as a process. */
@@ -114,4 +115,11 @@ test('a key that the service does not know, and a wrong key of ours, are faults 
   const fault = await faultOf(fetchFromService(ref.storageKey, { ...access, token }));
   expect(fault.code).toBe('storage-down');
   expect(fault.message).not.toContain('signature=');
+});
+
+test('what is larger than may be uploaded is not taken in, whatever was announced', async () => {
+  const largest = await storedFile(Buffer.alloc(MAX_UPLOAD_BYTES));
+  expect((await openStoredFile(largest.ref, access)).length).toBe(MAX_UPLOAD_BYTES);
+  const { ref } = await storedFile(Buffer.alloc(MAX_UPLOAD_BYTES + 1));
+  expect((await faultOf(fetchFromService(ref.storageKey, access))).code).toBe('too-big');
 });

@@ -8,7 +8,7 @@ import { makeReading } from '../../../../db/commands/file/make-reading';
 import { AppError } from '../../../../db/errors';
 import type { Actor } from '../../../../db/policies/may';
 import { audit, reading } from '../../../../db/schema/index';
-import { createTestDatabase, type TestDatabase } from '../../../helpers/database';
+import { createTestDatabase, warmUp, type TestDatabase } from '../../../helpers/database';
 import { makeAttachment, makeEntry, makeMember, makeNotebook, makePerson } from '../../../helpers/factories';
 import { golden } from '../../../ws-server/projector/world';
 
@@ -100,6 +100,7 @@ describe('what', () => {
     const editor = await makePerson(database.app);
     await makeMember(database.app, notebookId, editor, 'editor');
     const both = [owner, editor];
+    await warmUp(database.app, 6);
     const made = await Promise.all(Array.from({ length: 6 }, (_, i) => make(both[i % 2]!)));
     for (const one of made) expect(one).toEqual(made[0]);
     // The order in which a browser lists the parts of a reading says nothing (RFC 8785 sorts them).

@@ -7,7 +7,7 @@ import { AppError } from '../../../../db/errors';
 import type { Actor } from '../../../../db/policies/may';
 import { listAttachments } from '../../../../db/queries/file/list-attachments';
 import { attachment, audit, uploadTicket } from '../../../../db/schema/index';
-import { createTestDatabase, type TestDatabase } from '../../../helpers/database';
+import { createTestDatabase, warmUp, type TestDatabase } from '../../../helpers/database';
 import { makeEntry, makeMember, makeNotebook, makePerson } from '../../../helpers/factories';
 
 /** Uploads as the database sees them: a ticket, then an attachment, whoever says what in between (rules U2, U6, S45). */
@@ -87,6 +87,7 @@ describe('finishing', () => {
   test('told twice of one file, also at the same moment, there is one attachment and one answer', async () => {
     const { ticketId } = await start(owner);
     const storageKey = randomUUID();
+    await warmUp(database.app, 5);
     const answers = await Promise.all(Array.from({ length: 5 }, () => finish(ticketId, { storageKey })));
     for (const answer of answers) expect(answer).toEqual(answers[0]);
     expect(await finish(ticketId, { storageKey, bytes: 1, sha256: 'cd'.repeat(32) })).toEqual(answers[0]);
