@@ -106,7 +106,7 @@ function PlaceLink({ place, current }: { place: Place; current: boolean }) {
         {current ? (
           <span
             aria-hidden
-            className="absolute inset-x-6 top-[-1px] h-0.5 bg-malachite tab:inset-x-auto tab:inset-y-2 tab:left-0 tab:h-auto tab:w-0.5"
+            className="absolute inset-x-2 top-[-1px] h-0.5 bg-malachite tab:inset-x-auto tab:inset-y-2 tab:left-0 tab:h-auto tab:w-0.5"
           />
         ) : null}
         <span className="desk:hidden">{place.icon}</span>

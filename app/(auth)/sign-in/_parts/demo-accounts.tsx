@@ -1,3 +1,5 @@
+import Link from 'next/link';
+
 export interface DemoOffer {
   readonly password: string;
   readonly people: readonly { login: string; name: string; role: string; about: string }[];
@@ -30,6 +32,12 @@ export function DemoAccounts({ demo, onPick }: { demo: DemoOffer; onPick: (login
           </li>
         ))}
       </ul>
+      <p className="label mt-3 text-muted">
+        <Link href="/mail" className="underline underline-offset-4 hover:text-ink">
+          Mail that is sent here
+        </Link>{' '}
+        stays on this machine.
+      </p>
     </section>
   );
 }

@@ -27,7 +27,7 @@ export default async function PeoplePage() {
       </PlaceHeading>
       <ul className="mt-8 divide-y border-y" aria-label="People">
         {people.map((person) => (
-          <li key={person.id} className="grid gap-x-6 gap-y-0.5 py-3 tab:grid-cols-[1fr_12rem_11rem]">
+          <li key={person.id} className="grid gap-x-6 gap-y-0.5 py-3 tab:grid-cols-[1fr_12rem_13rem]">
             <div>
               <Link
                 href={`/people/${person.id}`}
@@ -42,7 +42,9 @@ export default async function PeoplePage() {
             <p className="small">{roleInWords(person)}</p>
             <p className="label text-muted">
               Account {accountInWords(person)}
-              {person.lastSeenAt ? `, last seen ${formatMoment(person.lastSeenAt, timeZone)}` : ''}
+              {person.lastSeenAt ? (
+                <span className="block">Last seen {formatMoment(person.lastSeenAt, timeZone)}</span>
+              ) : null}
             </p>
           </li>
         ))}
