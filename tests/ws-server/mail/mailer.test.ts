@@ -1,4 +1,6 @@
+import { once } from 'node:events';
 import { mkdtempSync, rmSync } from 'node:fs';
+import { createServer } from 'node:net';
 import { tmpdir } from 'node:os';
 import path from 'node:path';
 import { sql } from 'drizzle-orm';
@@ -162,6 +164,19 @@ test('a reset for a name that nobody has is dropped; one by address reaches its 
     return rows.length === 1;
   });
   expect(await outbox(who.personId)).toHaveLength(1);
+});
+
+test('a mail server that takes a connection and says nothing is given up', async () => {
+  const silent = createServer().listen(0, '127.0.0.1');
+  await once(silent, 'listening');
+  const { port: silentPort } = silent.address() as { port: number };
+  const send = smtpSender(`smtp://127.0.0.1:${silentPort}`, FROM, 200);
+  const letter = { id: 'x', to: { name: 'N', address: 'n@lab.example' }, subject: 's', text: 't' };
+  try {
+    await expect(send(letter)).rejects.toThrow(/timeout|greeting/i);
+  } finally {
+    silent.close();
+  }
 });
 
 test('a name with line breaks and header words stays one header (S31)', async () => {
