@@ -17,3 +17,26 @@ export const createNotebookInput = z.strictObject({
     .default(''),
 });
 export type CreateNotebookInput = z.output<typeof createNotebookInput>;
+
+export const MEMBER_ROLES = ['owner', 'editor', 'reader', 'witness'] as const;
+
+/** Adds somebody to a notebook, by login name or e-mail address. */
+export const addMemberInput = z.strictObject({
+  notebookId: z.uuid(),
+  who: z
+    .string()
+    .trim()
+    .toLowerCase()
+    .min(1, 'Enter a login name or an e-mail address.')
+    .max(200, 'This is too long.'),
+  role: z.enum(MEMBER_ROLES),
+});
+export type AddMemberInput = z.output<typeof addMemberInput>;
+
+/** Gives a member another role; null: no longer a member. */
+export const changeMemberInput = z.strictObject({
+  notebookId: z.uuid(),
+  personId: z.uuid(),
+  role: z.enum(MEMBER_ROLES).nullable(),
+});
+export type ChangeMemberInput = z.output<typeof changeMemberInput>;

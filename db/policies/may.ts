@@ -46,6 +46,8 @@ export interface OtherPerson {
 export interface ActionThings {
   'notebook.read': InNotebook;
   'notebook.create': null;
+  /** Who belongs to it, and as what. */
+  'notebook.members': InNotebook;
   'entry.create': InNotebook;
   'entry.read': InEntry;
   /** Body, title, date, settings of a block. */
@@ -73,6 +75,7 @@ const isOpenDraft = (thing: InEntry) => thing.state === 'draft';
 const rules: { [A in Action]: (actor: Actor, thing: ActionThings[A]) => boolean } = {
   'notebook.read': (_actor, thing) => isMember(thing),
   'notebook.create': (actor) => actor.role === 'pi' || (actor.admin && actor.role !== 'guest'),
+  'notebook.members': (actor, thing) => actor.role !== 'guest' && thing.member === 'owner',
   'entry.create': (actor, thing) => isWriter(actor, thing) && !thing.archived,
   'entry.read': (_actor, thing) => isMember(thing),
   'entry.write': (actor, thing) => isWriter(actor, thing) && isOpenDraft(thing) && !thing.archived,

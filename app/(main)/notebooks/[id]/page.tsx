@@ -3,13 +3,16 @@ import Link from 'next/link';
 import { startEntryAction } from '@/app/(main)/actions';
 import { Ledger } from '@/components/notebook/ledger';
 import { MemberLine } from '@/components/notebook/member-line';
+import { Members } from '@/components/notebook/members';
 import { StartEntry } from '@/components/notebook/start-entry';
 import { Place } from '@/components/shell/place';
 import { EmptyPlace } from '@/components/ui/empty-place';
 import { Notice } from '@/components/ui/notice';
 import { WalkMark } from '@/components/ui/walk-mark';
 import { db } from '@/db/client';
+import { listMembers } from '@/db/queries/notebook/list-members';
 import { listEntries } from '@/db/queries/entry/list-entries';
+import { addMemberAction, changeMemberAction } from './actions';
 import { loadNotebook } from './load-notebook';
 
 type Props = {
@@ -25,7 +28,10 @@ export async function generateMetadata({ params }: Props): Promise<Metadata> {
 export default async function NotebookPage({ params, searchParams }: Props) {
   const { actor, notebook } = await loadNotebook((await params).id);
   const before = readNumber((await searchParams).before);
-  const { entries, next } = await listEntries(db(), actor, { notebookId: notebook.id, before });
+  const [{ entries, next }, members] = await Promise.all([
+    listEntries(db(), actor, { notebookId: notebook.id, before }),
+    listMembers(db(), actor, notebook.id),
+  ]);
   return (
     <Place>
       <header className="flex gap-5 tab:gap-7">
@@ -37,6 +43,14 @@ export default async function NotebookPage({ params, searchParams }: Props) {
             <p className="mt-2 max-w-measure text-text text-muted">{notebook.description}</p>
           ) : null}
           <MemberLine members={notebook.members} />
+          {members ? (
+            <Members
+              notebookId={notebook.id}
+              members={members}
+              add={addMemberAction}
+              change={changeMemberAction}
+            />
+          ) : null}
         </div>
       </header>
       <div className="mt-8">
