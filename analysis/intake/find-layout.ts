@@ -1,9 +1,9 @@
 import { intakeFailure } from './failure';
+import { commentedNames, countNumbers, namesAbove, type TableShape } from './find-names';
 import { HEAD_CHARACTERS } from './limits';
 import { readNumber, saysNoValue } from './number';
 import { eachRow, type Row } from './rows';
 import type { Dialect, IntakeFailure } from './types';
-import { isUnit, withoutBrackets } from './units';
 
 /** Where the table is in a file: how it is cut, and which lines are names, units and data. */
 export interface Layout {
@@ -44,12 +44,13 @@ export function findLayout(text: string): Layout | IntakeFailure {
       if (decimal === delimiter) continue;
       const found = tableIn(rows, decimal, delimiter);
       if (!found || (best && found.score <= best.score)) continue;
-      const header = found.header ?? commentedHeader(lines, found.data[0]!, { delimiter, comment });
-      best = { score: found.score, layout: { delimiter, decimal, comment, ...found, header } };
+      const header = found.header ?? commentedNames(lines, found.data[0]!.line, found.shape, comment);
+      const { units, data } = found;
+      best = { score: found.score, layout: { delimiter, decimal, comment, header, units, data } };
     }
   }
   if (best) return best.layout;
-  return failure ?? noTable('text without a table of numbers');
+  return failure ?? noTable(otherText(lines, comment));
 }
 
 /** The start of the text, cut at a line's end. */
@@ -59,16 +60,13 @@ function headOf(text: string): string {
   return text.slice(0, cut > 0 ? cut : HEAD_CHARACTERS);
 }
 
-const countNumbers = (row: Row, decimal: '.' | ',') =>
-  row.cells.reduce((count, cell) => count + (Number.isNaN(readNumber(cell, decimal)) ? 0 : 1), 0);
-
 /** A row of data has at least two numbers, and they are at least a third of its filled cells. */
 function isData(row: Row, decimal: '.' | ','): boolean {
   const numbers = countNumbers(row, decimal);
   return numbers >= 2 && numbers * 3 >= row.cells.filter((cell) => cell !== '').length;
 }
 
-function tableIn(rows: readonly Row[], decimal: '.' | ',', delimiter: string) {
+function tableIn(rows: readonly Row[], decimal: '.' | ',', delimiter: Dialect['delimiter']) {
   const good = rows.map((row) => isData(row, decimal));
   const width = commonWidth(rows.filter((_, i) => good[i]));
   let first = rows.findIndex((row, i) => good[i] && row.cells.length === width);
@@ -86,10 +84,23 @@ function tableIn(rows: readonly Row[], decimal: '.' | ',', delimiter: string) {
     score += fits ? 3 * countNumbers(row, decimal) - filled : -2;
     if (fits) fitting += 1;
   }
-  const names = namesAbove(rows, first, { width, decimal, blanks: delimiter === ' ' });
+  const shape = shapeOf(data, { width, decimal, delimiter });
+  const names = namesAbove(rows, first, shape);
   // Prose has numbers too, but not in most of its lines; a single row needs names above it to be a table.
   if (fitting * 2 < data.length || (fitting < 2 && names.header === null)) return null;
-  return { score: names.header ? score + 1 : score, ...names, data };
+  return { score: names.header ? score + 1 : score, ...names, data, shape };
+}
+
+/** What the rows of data say about the row of names that belongs to them. */
+function shapeOf(
+  data: readonly Row[],
+  table: Pick<TableShape, 'width' | 'decimal' | 'delimiter'>,
+): TableShape {
+  const rows = data.filter(({ cells }) => cells.length === table.width);
+  let filled = table.width;
+  while (filled > 1 && rows.every(({ cells }) => cells[filled - 1] === '')) filled -= 1;
+  const firsts = new Set(rows.map(({ cells }) => cells[0]));
+  return { ...table, filled, rowNames: rows.length > 2 && !firsts.has('') && firsts.size === rows.length };
 }
 
 /** The most frequent width; among equals the larger. */
@@ -104,65 +115,6 @@ function commonWidth(rows: readonly Row[]): number {
   return best;
 }
 
-function namesAbove(
-  rows: readonly Row[],
-  first: number,
-  table: { width: number; decimal: '.' | ','; blanks: boolean },
-): { header: Row | null; units: Row | null } {
-  const wordsAt = (at: number): Row | null => {
-    const row = rows[at];
-    if (!row) return null;
-    const fitted = table.blanks && row.cells.length !== table.width ? withUnitsGlued(row) : row;
-    return fitted.cells.length === table.width && countNumbers(fitted, table.decimal) === 0 ? fitted : null;
-  };
-  const above = wordsAt(first - 1);
-  if (above === null) return { header: null, units: null };
-  const names = isUnitsRow(above) ? wordsAt(first - 2) : null;
-  return names ? { header: names, units: above } : { header: above, units: null };
-}
-
-/** "time (s) x (µm)" cut at blanks is two columns, not four. */
-function withUnitsGlued(row: Row): Row {
-  const cells: string[] = [];
-  for (const cell of row.cells) {
-    const last = cells.length - 1;
-    if (last >= 0 && withoutBrackets(cell) !== cell) cells[last] += ` ${cell}`;
-    else cells.push(cell);
-  }
-  return { ...row, cells };
-}
-
-/** Cells such as "s", "(µm)", "[px]", "-" or nothing, with at least one real unit among them. */
-function isUnitsRow(row: Row): boolean {
-  const bare = row.cells.map(withoutBrackets);
-  return (
-    bare.some(isUnit) && bare.every((cell, i) => isNoUnit(cell) || isUnit(cell) || cell !== row.cells[i])
-  );
-}
-
-/** What stands in a row of units below a column that has none. */
-export const isNoUnit = (cell: string): boolean =>
-  ['', '-', '–', '1', '#', 'none'].includes(cell.toLowerCase());
-
-/** Names in the comment right above the first row: "# t x y". */
-function commentedHeader(
-  lines: readonly string[],
-  first: Row,
-  dialect: Pick<Dialect, 'delimiter' | 'comment'>,
-): Row | null {
-  const line = lines[first.line - 2]?.trim();
-  if (dialect.comment === null || !line?.startsWith(dialect.comment)) return null;
-  let bare = line;
-  while (bare.startsWith(dialect.comment)) bare = bare.slice(dialect.comment.length);
-  let names: Row | null = null;
-  eachRow(bare.trimStart(), { ...dialect, comment: null }, { row: (row) => void (names = row) });
-  if (names === null) return null;
-  const row: Row = { line: first.line - 1, cells: (names as Row).cells };
-  const fitted =
-    dialect.delimiter === ' ' && row.cells.length !== first.cells.length ? withUnitsGlued(row) : row;
-  return fitted.cells.length === first.cells.length && countNumbers(fitted, '.') === 0 ? fitted : null;
-}
-
 /** Well-known kinds of text that hold no table of cells. */
 function otherFormat(text: string): string | null {
   const start = text.slice(0, 4096).trimStart();
@@ -171,6 +123,21 @@ function otherFormat(text: string): string | null {
   const braces = (start.startsWith('{') && end.endsWith('}')) || (start.startsWith('[') && end.endsWith(']'));
   if (braces) return 'a JSON file';
   return text.trim() === '' ? 'an empty page: there are only blanks and line breaks' : null;
+}
+
+/** What a text is that has rows, but no table of positions. */
+function otherText(lines: readonly string[], comment: string | null): string {
+  const rows = lines
+    .map((line) => line.trim())
+    .filter((line) => line !== '' && (comment === null || !line.startsWith(comment)));
+  if (rows.length === 1 && DELIMITERS.some((mark) => mark !== ' ' && rows[0]!.includes(mark)))
+    return 'a line of names without rows of numbers below it';
+  const isNumber = (row: string) =>
+    !(Number.isNaN(readNumber(row, '.')) && Number.isNaN(readNumber(row, ',')));
+  const numbers = rows.filter(isNumber).length;
+  return numbers > 0 && numbers >= rows.length - 1
+    ? 'a single column of numbers'
+    : 'text without a table of numbers';
 }
 
 function noTable(is: string): IntakeFailure {

@@ -37,11 +37,17 @@ function axisUnits(roles: ColumnRoles, columns: Inspection['columns'], found: Fo
   const shared = known.length > 0 && known.every((unit) => unit === known[0]) ? known[0]! : null;
   for (const axis of own) if (axis?.text) judge(axis.text, axis.name, lengthUnit, 'lengthUnit', found);
   const bare = own.some((axis) => axis !== null && lengthUnit(axis.text ?? '') === null);
+  // Where a unit stands that cannot be converted, nothing is assumed: a person is asked.
+  if (bare && found.required.includes('lengthUnit')) return unitsOf(own, shared);
   if (bare && shared === null) {
     found.assumed.push('lengthUnit');
     found.notes.push(NO_LENGTH_UNIT);
   } else if (bare)
     found.notes.push('One axis has no unit in the file; it was taken to have the same as the others.');
+  return unitsOf(own, shared);
+}
+
+function unitsOf(own: readonly ({ readonly text: string | null } | null)[], shared: LengthUnit | null) {
   const unit = (at: 0 | 1 | 2): LengthUnit | null =>
     own[at] ? (lengthUnit(own[at].text ?? '') ?? shared ?? 'um') : null;
   return { x: unit(0) ?? 'um', y: unit(1), z: unit(2) };
@@ -53,6 +59,7 @@ function clockUnit(roles: ColumnRoles, columns: Inspection['columns'], found: Fo
   const unit = timeUnit(text ?? '') ?? timeUnit(name);
   if (unit !== null) return unit;
   if (text) judge(text, name, timeUnit, 'timeUnit', found);
+  if (found.required.includes('timeUnit')) return 's';
   found.assumed.push('timeUnit');
   found.notes.push('Times have no unit in the file; they were taken as seconds.');
   return 's';

@@ -1,5 +1,6 @@
 import { decodeFile, type DecodedText } from './decode';
-import { findLayout, isNoUnit, type Layout } from './find-layout';
+import { findLayout, type Layout } from './find-layout';
+import { isNoUnit } from './find-names';
 import { findRoles } from './find-roles';
 import { findUnits } from './find-units';
 import { PARSER_VERSION, PREVIEW_ROWS } from './limits';
