@@ -1,5 +1,5 @@
 import type { ColumnRoles } from './types';
-import { countsFrames, lengthUnit, timeUnit } from './units';
+import { countsFrames, isTemperature, lengthUnit, timeUnit } from './units';
 
 /** Which columns could play which part, judged by their names; null where no name fits. */
 export type NamedRoles = Record<keyof ColumnRoles, number | null>;
@@ -7,8 +7,10 @@ export type NamedRoles = Record<keyof ColumnRoles, number | null>;
 export interface NamedColumn {
   readonly name: string;
   readonly unit: string | null;
-  /** Whether its first cells hold numbers. Only a track may be anything else. */
+  /** Whether most of its first cells are numbers. Only a track may be anything else, and a position may be missing. */
   readonly numeric: boolean;
+  /** Numbers among its first cells; 0 when more of them are words. */
+  readonly positions: number;
 }
 
 /** Words of general English, the surest first. A name counts when nothing but fillers stand beside the word. */
@@ -124,7 +126,8 @@ function frameRank(column: NamedColumn, words: readonly string[]): number {
 }
 
 function timeRank(column: NamedColumn, words: readonly string[]): number {
-  if (column.unit !== null && timeUnit(column.unit) === null && lengthUnit(column.unit) !== null)
+  const { unit } = column;
+  if (unit !== null && timeUnit(unit) === null && (lengthUnit(unit) !== null || isTemperature(unit)))
     return Infinity;
   const named = rank(words, TIME, TIME_FILLERS);
   // A column called "seconds" or "ms" is a time whose name is its unit.
@@ -140,7 +143,9 @@ function findAxes(columns: readonly NamedColumn[], words: readonly (readonly str
     (['x', 'y', 'z'] as const).map((axis) => {
       const at = columns.findIndex(
         (column, i) =>
-          column.numeric && familyOf(column) === family && rank(words[i]!, [axis], AXIS_FILLERS) < Infinity,
+          column.positions > 0 &&
+          familyOf(column) === family &&
+          rank(words[i]!, [axis], AXIS_FILLERS) < Infinity,
       );
       return at < 0 ? null : at;
     });
@@ -150,13 +155,18 @@ function findAxes(columns: readonly NamedColumn[], words: readonly (readonly str
   const chosen = [...sets].sort((a, b) => (b[0] === null ? 0 : size(b)) - (a[0] === null ? 0 : size(a)));
   const pick = (axis: 0 | 1 | 2) => chosen.find((set) => set[axis] !== null)?.[axis] ?? null;
   const x = pick(0) ?? linePosition(columns, words);
-  return { x, y: x === null ? null : pick(1), z: x === null || pick(1) === null ? null : pick(2) };
+  if (x === null) return { x, y: null, z: null };
+  // An axis that is empty where x is not was not measured.
+  const beside = (at: number | null) =>
+    at !== null && columns[at]!.positions * 2 >= columns[x]!.positions ? at : null;
+  const y = beside(pick(1));
+  return { x, y, z: y === null ? null : beside(pick(2)) };
 }
 
 /** Positions along one line may be called just that. */
 function linePosition(columns: readonly NamedColumn[], words: readonly (readonly string[])[]): number | null {
   const at = columns.findIndex(
-    (column, i) => column.numeric && words[i]!.length === 1 && LINE_POSITION.includes(words[i]![0]!),
+    (column, i) => column.positions > 0 && words[i]!.length === 1 && LINE_POSITION.includes(words[i]![0]!),
   );
   return at < 0 ? null : at;
 }

@@ -84,6 +84,9 @@ const OTHER_UNITS: ReadonlySet<string> = new Set(
     'mil',
   ].concat(['fs', 'ps', 'ns', 'nanosecond', 'nanoseconds', 'd', 'day', 'days', 'week', 'weeks']),
 );
+const TEMPERATURES: ReadonlySet<string> = new Set(
+  ['c', 'k', 'f', '°c', '°f', '℃', 'degc', 'deg c', 'degree c', 'degrees c'].concat(['celsius', 'kelvin']),
+);
 const FRAME_WORDS: ReadonlySet<string> = new Set(['frame', 'frames', 'image', 'images', 'slice', 'slices']);
 
 /** A unit as people write it: µ (U+00B5) and μ (U+03BC) both mean micro; a full stop after "sec." means nothing. */
@@ -100,6 +103,8 @@ export const lengthUnit = (text: string): LengthUnit | null => lookUp(LENGTH_WOR
 export const isUnit = (text: string): boolean => timeUnit(text) !== null || lengthUnit(text) !== null;
 /** A unit of length or time that cannot be converted here, such as inches or days. */
 export const isOtherUnit = (text: string): boolean => OTHER_UNITS.has(plain(text));
+/** "T (°C)" is a temperature and no time. */
+export const isTemperature = (text: string): boolean => TEMPERATURES.has(plain(text));
 /** "time (frames)" counts frames. */
 export const countsFrames = (text: string): boolean => FRAME_WORDS.has(plain(text));
 
