@@ -1,7 +1,7 @@
 import { NO_LENGTH_UNIT } from './find-units';
 import { stillRequired } from './required';
-import type { ColumnRoles, Inspection, LengthUnit, Missing, ReadingSpec } from './types';
-import { isOtherUnit, lengthUnit } from './units';
+import type { ColumnRoles, Inspection, LengthUnit, Missing, ReadingSpec, TimeUnit } from './types';
+import { isOtherUnit, lengthUnit, timeUnit } from './units';
 
 /** What a person says about a file beside what it says itself. Numbers as decimal text. */
 export interface Stated {
@@ -42,17 +42,20 @@ export function applyStated(inspection: Inspection, stated: Stated): Inspection 
   return {
     ...inspection,
     spec,
-    required: [...stillRequired(spec), ...inspection.required.filter((what) => !unitChosen(what, stated))],
+    required: [...stillRequired(spec), ...unitsToSettle(inspection, spec, stated)],
     assumed: inspection.assumed.filter((what) => !settled(what)),
     notes,
   };
 }
 
-/** Only a person can settle a unit that cannot be converted; what else was required is found from the reading. */
-function unitChosen(what: Missing, { units, columns }: Stated): boolean {
-  if (what === 'lengthUnit') return units?.x !== undefined;
-  if (what === 'timeUnit') return units?.time !== undefined || typeof columns?.frame === 'number';
-  return true;
+/** Only a person can settle a unit that stands above a column and cannot be converted. */
+function unitsToSettle({ columns }: Inspection, spec: ReadingSpec, { units }: Stated): Missing[] {
+  const other = (column: number | null) => column !== null && isOtherUnit(columns[column]?.unit ?? '');
+  const { x, y, z, time } = spec.columns;
+  const settle: Missing[] = [];
+  if (units?.x === undefined && [x, y, z].some(other)) settle.push('lengthUnit');
+  if (units?.time === undefined && other(time)) settle.push('timeUnit');
+  return settle;
 }
 
 /** Undefined means "as guessed", also when a caller writes it out. */
@@ -66,18 +69,29 @@ function withColumns(inspection: Inspection, stated: Partial<ColumnRoles>): Read
   const columns = { ...spec.columns, ...own };
   if (typeof own.time === 'number') columns.frame = own.frame ?? null;
   else if (typeof own.frame === 'number') columns.time = null;
-  const unitOf = (column: number | null, before: LengthUnit | null): LengthUnit | null =>
-    column === null ? null : (lengthUnit(inspection.columns[column]?.unit ?? '') ?? before ?? spec.units.x);
+  const unitOf = (column: number | null, before: LengthUnit | null): LengthUnit | null => {
+    if (column === null) return null;
+    const text = inspection.columns[column]?.unit ?? '';
+    return lengthUnit(text) ?? (isOtherUnit(text) ? 'um' : (before ?? spec.units.x));
+  };
   return {
     ...spec,
     columns,
     units: {
-      time: columns.time === null ? null : (spec.units.time ?? 's'),
+      time: timeOf(inspection, columns.time),
       x: unitOf(columns.x, spec.units.x) ?? spec.units.x,
       y: unitOf(columns.y, spec.units.y),
       z: unitOf(columns.z, spec.units.z),
     },
   };
+}
+
+/** The unit of a time column: the guessed one's as found, another one's from its own header, else seconds. */
+function timeOf({ spec, columns }: Inspection, time: number | null): TimeUnit | null {
+  if (time === null) return null;
+  if (time === spec.columns.time) return spec.units.time ?? 's';
+  const { unit, name } = columns[time] ?? { unit: null, name: '' };
+  return timeUnit(unit ?? '') ?? timeUnit(name) ?? 's';
 }
 
 /** Positions whose header has no unit become pixels, when the size of one is stated. */

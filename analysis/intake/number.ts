@@ -68,6 +68,8 @@ export function whyNoNumber(what: string, text: string, decimal: '.' | ','): str
   if (text === '') return `${what} is missing`;
   const shown = `${what} "${text.length > SHOWN ? `${text.slice(0, SHOWN)}…` : text}"`;
   if (saysNoValue(text)) return `${shown} says that there is no value`;
+  // A number after all, so it was its value in the unit wanted that does not fit into a double.
+  if (!Number.isNaN(readNumber(text, decimal))) return `${shown} is too large`;
   const other = decimal === '.' ? ',' : '.';
   const otherMark = text.indexOf(other);
   if (otherMark >= 0 && !Number.isNaN(readNumber(text, other))) {
