@@ -85,7 +85,13 @@ function tableIn(rows: readonly Row[], decimal: '.' | ',', delimiter: Dialect['d
     if (fits) fitting += 1;
   }
   const shape = shapeOf(data, { width, decimal, delimiter });
-  const names = namesAbove(rows, first, shape);
+  let names = namesAbove(rows, first, shape);
+  if (names.header === null) {
+    // Rows of another width may stand between the names and the first row that is sound; the reading lists them.
+    let top = first;
+    while (good[top - 1]) top -= 1;
+    names = namesAbove(rows, top, shape);
+  }
   // Prose has numbers too, but not in most of its lines; a single row needs names above it to be a table.
   if (fitting * 2 < data.length || (fitting < 2 && names.header === null)) return null;
   return { score: names.header ? score + 1 : score, ...names, data, shape };

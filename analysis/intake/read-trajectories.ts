@@ -100,35 +100,62 @@ function readBytes(
 function readRows(spec: ReadingSpec, collector: RowCollector, source: RowSource): IntakeFailure | null {
   const { dialect } = spec;
   const header = new RepeatedHeader(dialect);
+  const early = new EarlyRows(dialect);
   let width = 0;
   let settled = false;
   let missing: IntakeFailure | null = null;
   const visitor: RowVisitor = {
     fault: (line, reason, shown) => {
-      if (line >= dialect.firstDataLine) collector.addProblem(line, reason, shown);
+      if (line < dialect.firstDataLine) early.remember(line, () => reason, shown);
+      else collector.addProblem(line, reason, shown);
     },
     row: ({ line, cells }, shown) => {
       if (line < dialect.firstDataLine) {
         header.remember(line, cells);
+        early.remember(line, () => wrongWidth(cells, width), shown());
         // Cut at blanks, names with a unit behind them are more cells than there are columns.
         if (line === dialect.headerLine && dialect.delimiter !== ' ') width = cells.length;
         return;
       }
-      if (!settled && collector.count === 0 && collector.problemCount === 0) {
+      if (!settled) {
         width = Math.max(width, cells.length);
         missing = checkColumns(spec, width);
         if (missing) return false;
+        early.tell(collector);
       }
       settled = true;
       if (header.isAgain(cells)) collector.addProblem(line, 'the header again', shown());
       else if (misfit(cells, width, dialect.delimiter))
-        collector.addProblem(line, `${cells.length} cells instead of ${width}`, shown());
+        collector.addProblem(line, wrongWidth(cells, width), shown());
       else collector.add(line, cells, shown);
       return;
     },
   };
   const failed = source(visitor, () => (settled ? width : null));
   return missing ?? failed;
+}
+
+const wrongWidth = (cells: readonly string[], width: number) =>
+  cells.length === width
+    ? 'stands above the first line of data'
+    : `${cells.length} cells instead of ${width}`;
+
+/** Rows between the names and the first row of data: they could not be made out, and are listed once the width is known. */
+class EarlyRows {
+  private readonly rows: { line: number; reason: () => string; text: string }[] = [];
+  private readonly after: number;
+
+  constructor({ headerLine, unitsLine }: Dialect) {
+    this.after = headerLine === null ? Infinity : Math.max(headerLine, unitsLine ?? 0);
+  }
+
+  remember(line: number, reason: () => string, text: string): void {
+    if (line > this.after) this.rows.push({ line, reason, text });
+  }
+
+  tell(collector: RowCollector): void {
+    for (const { line, reason, text } of this.rows) collector.addProblem(line, reason(), text);
+  }
 }
 
 /** A header or a row of units that stands in the middle of a file, as where two files were joined. */
