@@ -1,5 +1,3 @@
-import { existsSync, readFileSync } from 'node:fs';
-import path from 'node:path';
 import { describe, expect, test } from 'vitest';
 import { inspectFile } from '../../../analysis/intake/inspect-file';
 import { goldenCase, goldenNames } from '../golden';
@@ -199,20 +197,5 @@ describe('hostile content', () => {
       /1500 columns/,
     );
     expect(refusal(`track,t,x,y\n${'1'.repeat(2 * 1024 * 1024)}\n`).message).toMatch(/million characters/);
-  });
-});
-
-/** Measured data beside the project; not part of it. */
-const REAL = path.resolve(import.meta.dirname, '../../../../shared/real');
-const present = existsSync(REAL);
-if (!present) console.info('skipped: there are no measured files at ../shared/real beside the project');
-describe.skipIf(!present)('measured files (needed: ../shared/real)', () => {
-  test.each([
-    ['perrin1909_mastic_tracks.csv', 121, 3, {}],
-    ['perrin1913_displacements_508.csv', 1016, 508, {}],
-    ['flow_polystyrene_fiducials.csv', 25_355, 11, { pixelSize: '0.1' }],
-  ])('%s: %i rows of %i tracks', (name, count, tracks, stated) => {
-    const outcome = read(new Uint8Array(readFileSync(path.join(REAL, name))), stated);
-    expect(outcome.summary).toMatchObject({ rows: count, tracks, badRows: 0 });
   });
 });
