@@ -46,7 +46,8 @@ describe('an experiment day', () => {
     await noor.page.waitForURL(/\/entries\/[0-9a-f-]{36}/);
     const entryUrl = noor.page.url().split('#')[0]!;
 
-    const body = noor.page.locator('.ProseMirror');
+    // Until the text has come from the server nothing can be typed into it.
+    const body = noor.page.locator('.ProseMirror[contenteditable="true"]');
     await body.click();
     await noor.page.keyboard.type('Beads in a sealed chamber, focus kept in the middle.');
     await noor.page.getByText('Saved', { exact: true }).waitFor();
@@ -56,7 +57,7 @@ describe('an experiment day', () => {
     await signIn(keita.page, stack.url, 'keita', DEMO_PASSWORD);
     await keita.page.goto(entryUrl);
     await keita.page.getByText('Beads in a sealed chamber').waitFor();
-    await keita.page.locator('.ProseMirror').click();
+    await keita.page.locator('.ProseMirror[contenteditable="true"]').click();
     await keita.page.keyboard.press('Control+End');
     await keita.page.keyboard.type(' Second pair of eyes.');
     await noor.page.getByText('Second pair of eyes.').waitFor();
