@@ -9,6 +9,7 @@ const OURS = [
   'files',
   'cache',
   'logs',
+  'mail',
   'demo-unfinished',
   'run.json',
   'secrets.json',
